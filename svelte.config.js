@@ -14,7 +14,12 @@ export default {
 		csrf: { trustedOrigins: ['*'] },
 		typescript: {
 			config: (config) => {
-				config.include.push('../tests/**/*.ts', '../*.config.ts', '../drizzle.config.ts');
+				config.include.push(
+					'../tests/**/*.ts',
+					'../fakes/**/*.ts',
+					'../scripts/**/*.ts',
+					'../*.config.ts'
+				);
 			}
 		}
 	}

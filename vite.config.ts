@@ -13,7 +13,12 @@ export default defineConfig({
 				test: {
 					name: 'unit',
 					environment: 'node',
-					include: ['src/**/*.test.ts', 'tests/unit/**/*.test.ts'],
+					include: [
+						'src/**/*.test.ts',
+						'fakes/**/*.test.ts',
+						'scripts/**/*.test.ts',
+						'tests/unit/**/*.test.ts'
+					],
 					exclude: ['**/*.db.test.ts']
 				}
 			},
