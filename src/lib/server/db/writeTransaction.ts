@@ -1,0 +1,58 @@
+import { eq, sql } from 'drizzle-orm';
+import type { App } from '../app';
+import { databaseErrorOf, type Transaction } from './database';
+import { boardRevision, transient } from './schema/transients';
+
+/** Channel on which web processes hear that the board changed; the payload is the new revision. */
+export const BOARD_CHANNEL = 'duskline_board';
+
+/** Collects what a transaction changed, so that the board's revision moves once, at its end. */
+export type Change = {
+	/** The transient changed: it gets the new revision. */
+	touch: (transientId: string) => void;
+	/** Something all transients share changed (telescopes, rota). */
+	touchNetwork: () => void;
+};
+
+const RETRIED = new Set(['40001', '40P01']);
+const MOST_TRIES = 4;
+
+/**
+ * Runs `body` in one transaction and moves the board's revision when it touched anything.
+ * The revision row is locked last and until commit, so revisions become visible in their order:
+ * a reader that has seen n has seen everything up to n.
+ */
+export async function writeTransaction<T>(
+	app: Pick<App, 'database'>,
+	body: (tx: Transaction, change: Change) => Promise<T>
+): Promise<T> {
+	for (let tries = 1; ; tries++) {
+		try {
+			return await app.database.transaction(async (tx) => {
+				const touched = new Set<string>();
+				let network = false;
+				const result = await body(tx, {
+					touch: (id) => void touched.add(id),
+					touchNetwork: () => void (network = true)
+				});
+				if (touched.size > 0 || network) await moveRevision(tx, touched);
+				return result;
+			});
+		} catch (error) {
+			const code = databaseErrorOf(error)?.code ?? '';
+			if (tries >= MOST_TRIES || !RETRIED.has(code)) throw error;
+		}
+	}
+}
+
+async function moveRevision(tx: Transaction, touched: Set<string>): Promise<void> {
+	const [row] = await tx
+		.update(boardRevision)
+		.set({ value: sql`${boardRevision.value} + 1` })
+		.returning({ value: boardRevision.value });
+	const revision = row!.value;
+	for (const id of touched) {
+		await tx.update(transient).set({ revision }).where(eq(transient.id, id));
+	}
+	await tx.execute(sql`select pg_notify(${BOARD_CHANNEL}, ${String(revision)})`);
+}
