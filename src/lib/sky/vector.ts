@@ -105,7 +105,10 @@ export function deproject(centre: Equatorial, point: TangentPoint): Equatorial {
 }
 
 /** Components of `b` along east, north and the direction of `a` itself, all for unit vectors. */
-function tangentParts(a: Equatorial, b: Equatorial): { east: number; north: number; along: number } {
+function tangentParts(
+	a: Equatorial,
+	b: Equatorial
+): { east: number; north: number; along: number } {
 	const deltaRad = reducedDifferenceDeg(b.raDeg, a.raDeg) * RAD_PER_DEG;
 	const aRad = a.decDeg * RAD_PER_DEG;
 	const bRad = b.decDeg * RAD_PER_DEG;

@@ -43,9 +43,4 @@ export type MapShape = { kind: 'map'; uniq: number[]; density: number[] };
 
 /** What one alert says about the position. */
 export type Shape =
-	| CircleShape
-	| HardCircleShape
-	| EllipseShape
-	| AnnulusShape
-	| PolygonShape
-	| MapShape;
+	CircleShape | HardCircleShape | EllipseShape | AnnulusShape | PolygonShape | MapShape;
