@@ -23,6 +23,9 @@ export const PERMISSIONS = {
 	viewCirculars: ['duty', 'observer', 'pi', 'steward', 'partner'],
 	writeCircular: ['duty'],
 	viewDeliveries: ['duty', 'pi', 'steward'],
+	retryDelivery: ['steward'],
+	/** On transients with a published circular, from a telescope of their own. */
+	reportAsPartner: ['partner'],
 	setPreferences: ['partner', 'duty', 'observer', 'pi', 'steward'],
 
 	viewResponse: ['duty', 'observer', 'pi', 'steward'],
