@@ -1,0 +1,136 @@
+import { Body, GeoVector } from 'astronomy-engine';
+import { describe, expect, it } from 'vitest';
+import { alertPacketSchema } from '../src/lib/domain/alertPacket';
+import { separationDeg, toEquatorial } from '../src/lib/sky/vector';
+import { drawStory, planStory, type Story } from './demoEvents';
+import { runFeed, type FeedOptions } from './demoFeed';
+import { measuredCircle, seededDraw } from './demoSky';
+import { serveLoopback, readJson, type Answer } from './loopbackServer';
+
+const T0_MS = Date.UTC(2026, 11, 1, 3, 41, 27);
+const STORIES: Story[] = ['localised', 'imaged', 'gammaOnly', 'refined', 'retracted', 'test'];
+
+describe('a measured circle', () => {
+	it.each([
+		{ radiusDeg: 8, containment: 0.9 },
+		{ radiusDeg: 3 / 3600, containment: 0.9 },
+		{ radiusDeg: 25, containment: 0.5 }
+	])('holds its source as often as it says, $radiusDeg°', (errors) => {
+		const draw = seededDraw(7);
+		const truth = { raDeg: 359.999, decDeg: -71 };
+		const count = 4000;
+		let inside = 0;
+		for (let i = 0; i < count; i += 1) {
+			const { centre } = measuredCircle(draw, truth, errors);
+			if (separationDeg(centre, truth) <= errors.radiusDeg) inside += 1;
+		}
+		// Three standard deviations of the binomial count.
+		const tolerance = 3 * Math.sqrt((errors.containment * (1 - errors.containment)) / count);
+		expect(Math.abs(inside / count - errors.containment)).toBeLessThan(tolerance);
+	});
+});
+
+describe('a story', () => {
+	it('is made of packets the API takes, far from the Sun, with one identifier a burst', () => {
+		const draw = seededDraw(11);
+		const sun = toEquatorial(GeoVector(Body.Sun, new Date(T0_MS), true));
+		for (let i = 0; i < 60; i += 1) {
+			for (const story of STORIES) {
+				for (const { packet } of planStory(draw, story, T0_MS)) {
+					expect(alertPacketSchema.parse(packet)).toEqual(packet);
+					if (packet.shape?.kind === 'circle') {
+						expect(separationDeg(packet.shape.centre, sun)).toBeGreaterThan(90);
+					}
+				}
+			}
+		}
+	});
+
+	it('narrows a burst from degrees to arcminutes to arcseconds within 90 s', () => {
+		const planned = planStory(seededDraw(3), 'localised', T0_MS).filter(
+			({ delayS }) => delayS !== 12
+		);
+		expect(planned.map(({ stream, delayS }) => [stream, delayS])).toEqual([
+			['tambour', 0],
+			['carapace', 30],
+			['needle', 75]
+		]);
+		const radiiDeg = planned.map(({ packet }) =>
+			packet.shape?.kind === 'circle' ? packet.shape.radiusDeg : NaN
+		);
+		expect(radiiDeg[0]).toBeGreaterThanOrEqual(1);
+		expect(radiiDeg[1]! * 60).toBeGreaterThan(0.9);
+		expect(radiiDeg[1]! * 60).toBeLessThan(3.1);
+		expect(radiiDeg[2]! * 3600).toBeGreaterThan(1.9);
+		expect(radiiDeg[2]! * 3600).toBeLessThan(5.1);
+		expect(planned[1]!.packet.cites).toMatchObject([{ relation: 'followup', stream: 'tambour' }]);
+	});
+
+	it('repeats with its seed, and every kind comes up', () => {
+		const draws = (seed: number) => {
+			const draw = seededDraw(seed);
+			return Array.from({ length: 200 }, () => drawStory(draw));
+		};
+		expect(draws(5)).toEqual(draws(5));
+		expect(new Set(draws(5))).toEqual(new Set(STORIES));
+	});
+});
+
+describe('the feed', () => {
+	type Seen = { key: string; body: Record<string, unknown> };
+
+	/** Runs the feed on a clock that only its own waits advance, until `packets` were answered. */
+	const feedInto = async (packets: number, statusOf: (call: number) => number) => {
+		const seen: Seen[] = [];
+		const lines: string[] = [];
+		const waitsMs: number[] = [];
+		const stop = new AbortController();
+		const server = await serveLoopback(async (request): Promise<Answer> => {
+			seen.push({ key: request.headers.authorization ?? '', body: await readJson(request) });
+			return { status: statusOf(seen.length), json: {} };
+		}, 0);
+		let clockMs = T0_MS;
+		const options: FeedOptions = {
+			origin: server.origin,
+			keys: { tambour: 'kt', carapace: 'kc', needle: 'kn' },
+			draw: seededDraw(21),
+			log: (line) => {
+				lines.push(line);
+				if (lines.length === packets) stop.abort();
+			},
+			signal: stop.signal,
+			sleep: async (ms, signal) => {
+				signal.throwIfAborted();
+				waitsMs.push(ms);
+				clockMs += ms;
+			},
+			now: () => clockMs
+		};
+		await runFeed(options);
+		await server.close();
+		return { seen, lines, waitsMs, elapsedMs: clockMs - T0_MS };
+	};
+
+	it('posts each packet with its stream’s key, the first within 20 s', async () => {
+		const { seen, waitsMs } = await feedInto(12, () => 201);
+		expect(waitsMs[0]).toBeLessThan(20_000);
+		const keyOf = { TB: 'Bearer kt', CP: 'Bearer kc', ND: 'Bearer kn' } as Record<string, string>;
+		for (const { key, body } of seen) {
+			expect(key).toBe(keyOf[String(body.packetId).slice(0, 2)]);
+			alertPacketSchema.parse(body);
+		}
+	});
+
+	it('backs off while the server fails and then sends the same packet', async () => {
+		const { seen, lines, waitsMs } = await feedInto(4, (call) => (call < 4 ? 503 : 201));
+		expect(new Set(seen.slice(0, 4).map(({ body }) => body.packetId)).size).toBe(1);
+		expect(waitsMs.filter((ms) => ms > 0).slice(1, 4)).toEqual([2000, 4000, 8000]);
+		expect(lines[3]).toContain('taken');
+	});
+
+	it('goes on with the next packet after a refusal', async () => {
+		const { seen, lines } = await feedInto(2, (call) => (call === 1 ? 422 : 201));
+		expect(lines[0]).toContain('answered 422');
+		expect(seen[1]!.body).not.toEqual(seen[0]!.body);
+	});
+});
