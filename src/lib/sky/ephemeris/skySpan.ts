@@ -33,8 +33,8 @@ export function skySpan(startMs: number, endMs: number): SkySpan {
 	}
 	const first = instantAt(startMs);
 	const last = instantAt(endMs);
-	// 1.00273781191135448 turns of the Earth per UT1 day (IAU 2000) tell how many whole turns to add.
-	const expectedRad = ((endMs - startMs) / 86_400_000) * 1.00273781191135448 * FULL_TURN_RAD;
+	// 1.002737811911354 turns of the Earth per UT1 day (IAU 2000) tell how many whole turns to add.
+	const expectedRad = ((endMs - startMs) / 86_400_000) * 1.002737811911354 * FULL_TURN_RAD;
 	const shortRad = last.gastRad - first.gastRad;
 	const turnedRad = shortRad + FULL_TURN_RAD * Math.round((expectedRad - shortRad) / FULL_TURN_RAD);
 	return {

@@ -1,4 +1,5 @@
 import type { Equatorial } from '../angle';
+import type { TwilightBand } from '../ephemeris/lowSun';
 import type { RegionPoints } from '../regions/jointRegion';
 import type { Forbidden, TelescopeSpec, Window } from '../visibility/telescope';
 
@@ -15,7 +16,7 @@ export type PlannedTile = {
 	detectChance: number;
 };
 
-export type TwilightBand = 'day' | 'civil' | 'nautical' | 'astronomical' | 'night';
+export type { TwilightBand } from '../ephemeris/lowSun';
 
 /** What a night strip draws: the sky's bands and the target's altitude at even steps. */
 export type Strip = {
