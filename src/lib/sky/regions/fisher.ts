@@ -1,7 +1,6 @@
-import type { Equatorial } from '../angle';
-import { toEquatorial, toVector, type Vector } from '../vector';
+import { toVector, type Vector } from '../vector';
 import { addInQuadrature, kappaFromRadius, kappaFromSigma, sigmaFromKappa } from './containment';
-import type { CircleShape, Shape } from './shape';
+import type { CircleShape } from './shape';
 
 /** A Fisher density on the sphere: mean direction and concentration κ (0 is uniform). */
 export type Fisher = { mean: Vector; kappa: number };
@@ -27,12 +26,6 @@ export function fisherOf(shape: CircleShape): Fisher {
 	if (systematicDeg === 0 || statistical === 0) return { mean, kappa: statistical };
 	const sigmaDeg = addInQuadrature(sigmaFromKappa(statistical), systematicDeg);
 	return { mean, kappa: kappaFromSigma(sigmaDeg) };
-}
-
-/** All parts as Fisher densities, or null when one of them is of another shape. */
-export function fisherParts(parts: Shape[]): Fisher[] | null {
-	const circles = parts.filter((part) => part.kind === 'circle');
-	return circles.length === parts.length ? circles.map(fisherOf) : null;
 }
 
 /** Product of Fisher densities, κμ = Σ κᵢμᵢ; exact at arcseconds. */
@@ -81,11 +74,6 @@ export function logFisherAt(part: Fisher, direction: Vector): number {
 /** ln of the density per steradian at the centre. */
 export function logFisherPeak(kappa: number): number {
 	return logOverSinh(kappa) - Math.log(4 * Math.PI);
-}
-
-/** Mean of a product, or the first part's own where the product is uniform. */
-export function meanOf(product: FisherProduct, fallback: Equatorial): Equatorial {
-	return product.mean ? toEquatorial(product.mean) : fallback;
 }
 
 /** ln(κ e^κ / sinh κ) = ln(2κ / (1 − e^(−2κ))); 0 at κ = 0. */

@@ -2,9 +2,10 @@ import type { Equatorial } from '../angle';
 import type { MocRanges } from '../moc/moc';
 import { canonicalOrder } from './canonicalOrder';
 import { closedRegion } from './closedRegion';
-import { fisherParts, logBayesFisher, multiplyFisher, type Fisher } from './fisher';
 import { keepApart } from './keepApart';
+import { meshRegion } from './meshRegion';
 import { contradicts, linkedGroups } from './overlap';
+import { multiplyParts, prepareParts, type Part, type PartProduct } from './parts';
 import type { RegionPoints } from './regionPoints';
 import type { Shape } from './shape';
 
@@ -35,27 +36,32 @@ export type JointRegion = {
  */
 export function jointRegion(parts: Shape[]): JointRegion {
 	if (parts.length === 0) throw new RangeError('parts is empty; it must hold at least one shape');
-	const ordered = canonicalOrder(parts);
-	const fisher = fisherParts(ordered);
-	if (!fisher) throw new RangeError('not yet');
-	return jointFisher(fisher);
+	const joint = combine(prepareParts(canonicalOrder(parts)));
+	return joint.region();
 }
 
-function jointFisher(parts: Fisher[]): JointRegion {
-	const [first] = parts;
-	if (!first) throw new RangeError('parts is empty; it must hold at least one shape');
-	const product = multiplyFisher(parts);
-	if (!contradicts(parts.length, product.halfChi2, logBayesFisher(parts))) {
-		return closedRegion({ mean: product.mean ?? first.mean, kappa: product.kappa });
+type Combination = { agrees: boolean; region: () => JointRegion };
+
+function combine(parts: Part[]): Combination {
+	const product = multiplyParts(parts);
+	if (!contradicts(parts.length, product.halfChi2, product.logBayes)) {
+		return { agrees: true, region: () => regionOf(product) };
 	}
-	const agree = (i: number, j: number) => {
-		const pair = [parts[i], parts[j]].filter((part) => part !== undefined);
-		return !contradicts(pair.length, multiplyFisher(pair).halfChi2, logBayesFisher(pair));
-	};
-	const groups = linkedGroups(parts.length, agree).map((group) =>
+	return { agrees: false, region: () => regionApart(parts) };
+}
+
+function regionOf(product: PartProduct): JointRegion {
+	return product.kind === 'fisher' ? closedRegion(product) : meshRegion(product.mesh.cells);
+}
+
+function regionApart(parts: Part[]): JointRegion {
+	const pair = (i: number, j: number) => [parts[i], parts[j]].filter((part) => part !== undefined);
+	const groups = linkedGroups(parts.length, (i, j) => combine(pair(i, j)).agrees).map((group) =>
 		group.flatMap((i) => parts[i] ?? [])
 	);
-	// A chain of parts that agree in pairs and contradict each other as a whole has no best subset: all stand alone.
+	// A chain that agrees pair by pair and contradicts itself as a whole has no best subset: all stand alone.
 	const apart = groups.length > 1 ? groups : parts.map((part) => [part]);
-	return keepApart(apart.map((group) => ({ region: jointFisher(group), weight: group.length })));
+	return keepApart(
+		apart.map((group) => ({ region: combine(group).region(), weight: group.length }))
+	);
 }
