@@ -17,13 +17,15 @@ export type Job<Payload> = {
 	retryLimit: number;
 	/** How many run at once in one process. */
 	concurrency: number;
+	/** At most one waits per singleton key: a second request before it starts is the same request. */
+	coalesce?: boolean;
 	/** Cron expression, UTC, when it also runs by itself with `scheduledPayload`. */
 	schedule?: { cron: string; payload: Payload };
 };
 
 export type SendOptions = {
 	startAfter?: Date;
-	/** At most one waiting job with this key. */
+	/** For coalescing jobs: what they are about. */
 	singletonKey?: string;
 };
 

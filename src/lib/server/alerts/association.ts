@@ -1,0 +1,136 @@
+import type { Membership } from '../../domain/vocabulary';
+import {
+	JOIN_LOG_ODDS,
+	START_LOG_ODDS,
+	logBayesFactor,
+	logPriorOdds
+} from '../../sky/regions/agreement';
+import type { Shape } from '../../sky/regions/shape';
+import type { Transaction } from '../db/database';
+import {
+	citedAlerts,
+	citingAlerts,
+	liveParts,
+	nearbyTransients,
+	serialsOf,
+	type AlertRow,
+	type LivePart
+} from './alertStore';
+import type { AlertPacket } from '../../domain/alertPacket';
+
+/** Where an alert goes and what its arrival withdraws. */
+export type Placement = {
+	/** Null: it starts a transient of its own. */
+	transientId: string | null;
+	membership: Membership;
+	logOdds: number | null;
+	/** Alerts whose parts it replaces or retracts. */
+	withdrawn: AlertRow[];
+	/** False when something that arrived earlier already supersedes or retracts it. */
+	live: boolean;
+};
+
+export type Arrival = {
+	packet: AlertPacket;
+	streamId: string;
+	streamCode: string;
+	alertsPerYear: number;
+	coincidenceWindowS: number;
+	t0: Date;
+	shape: Shape | null;
+};
+
+/**
+ * Decides which transient an alert belongs to: the one of its earlier serial, else of what it cites,
+ * else of what already cites it, else the one it agrees with best (science: Budavári & Szalay 2008).
+ */
+export async function placeAlert(tx: Transaction, arrival: Arrival): Promise<Placement> {
+	const { packet, streamId } = arrival;
+	const serials = await serialsOf(tx, streamId, packet.packetId);
+	const cited = await citedAlerts(tx, packet.cites);
+	const citing = await citingAlerts(tx, arrival.streamCode, packet.packetId);
+
+	const overtaken =
+		serials.some((row) => row.serial > packet.serial) ||
+		citing.some(({ relation }) => relation !== 'followup');
+	const withdrawn = [
+		...serials.filter((row) => row.serial < packet.serial && row.live),
+		...cited.filter(({ alert, relation }) => relation !== 'followup' && alert.live).map((c) => c.alert)
+	];
+	const known = serials[0] ?? cited[0]?.alert ?? citing[0]?.alert;
+	const live = packet.kind !== 'retraction' && !overtaken;
+	if (known) {
+		return {
+			transientId: known.transientId,
+			membership: 'cited',
+			logOdds: null,
+			withdrawn,
+			live
+		};
+	}
+	const best = arrival.shape ? await bestMatch(tx, arrival, arrival.shape) : null;
+	if (!best || best.logOdds < START_LOG_ODDS) {
+		return { transientId: null, membership: 'started', logOdds: null, withdrawn, live };
+	}
+	return {
+		transientId: best.transientId,
+		membership: best.logOdds > JOIN_LOG_ODDS ? 'joined' : 'provisional',
+		logOdds: best.logOdds,
+		withdrawn,
+		live
+	};
+}
+
+async function bestMatch(
+	tx: Transaction,
+	arrival: Arrival,
+	shape: Shape
+): Promise<{ transientId: string; logOdds: number } | null> {
+	const near = await nearbyTransients(
+		tx,
+		arrival.packet.role,
+		arrival.t0,
+		arrival.coincidenceWindowS
+	);
+	let best: { transientId: string; logOdds: number } | null = null;
+	for (const { id } of near) {
+		const parts = await liveParts(tx, id);
+		if (parts.length === 0) continue;
+		const logOdds = logOddsOfBelonging(parts, shape, arrival);
+		if (!best || logOdds > best.logOdds) best = { transientId: id, logOdds };
+	}
+	return best;
+}
+
+/**
+ * Natural log of the posterior odds that `shape` has the same source as `parts`: the Bayes factor of
+ * all together over that of the parts alone, times the prior odds from the rarer chance coincidence.
+ */
+export function logOddsOfBelonging(
+	parts: LivePart[],
+	shape: Shape,
+	arrival: Pick<Arrival, 'alertsPerYear' | 'coincidenceWindowS'>
+): number {
+	const shapes = parts.map((part) => part.shape);
+	const together = logBayesFactor([...shapes, shape]) - logBayesFactor(shapes);
+	return (
+		together +
+		logPriorOdds({
+			alertsPerYear: arrival.alertsPerYear,
+			windowS: arrival.coincidenceWindowS
+		})
+	);
+}
+
+/** Natural log of the odds that all live parts come from one source; null with fewer than two. */
+export function logOddsOfAgreement(parts: LivePart[]): number | null {
+	if (parts.length < 2) return null;
+	const prior = parts
+		.slice(1)
+		.reduce(
+			(sum, part) =>
+				sum + logPriorOdds({ alertsPerYear: part.alertsPerYear, windowS: part.coincidenceWindowS }),
+			0
+		);
+	return logBayesFactor(parts.map((part) => part.shape)) + prior;
+}

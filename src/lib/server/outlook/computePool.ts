@@ -1,0 +1,33 @@
+import { existsSync } from 'node:fs';
+import { resolve } from 'node:path';
+import { pathToFileURL } from 'node:url';
+import { Piscina } from 'piscina';
+import type { OutlookInput, Outlook } from '../../sky/outlook/outlook';
+import type { JointRegion } from '../../sky/regions/jointRegion';
+import type { Shape } from '../../sky/regions/shape';
+
+/** The heavy computations, off the web process's event loop. */
+export type ComputePool = {
+	outlook: (input: OutlookInput) => Promise<Outlook>;
+	jointRegion: (parts: Shape[]) => Promise<JointRegion>;
+	close: () => Promise<void>;
+};
+
+/** Worker threads that run `build-workers/compute.js`; idle ones stay, so that they keep warm. */
+export function createComputePool(threads: number): ComputePool {
+	const filename = resolve('build-workers/compute.js');
+	if (!existsSync(filename)) {
+		throw new Error('build-workers/compute.js is missing: run npm run build:workers first');
+	}
+	const pool = new Piscina({
+		filename: pathToFileURL(filename).href,
+		minThreads: 1,
+		maxThreads: threads,
+		idleTimeout: Infinity
+	});
+	return {
+		outlook: (input) => pool.run(input, { name: 'outlook' }) as Promise<Outlook>,
+		jointRegion: (parts) => pool.run(parts, { name: 'joint' }) as Promise<JointRegion>,
+		close: () => pool.destroy()
+	};
+}

@@ -1,0 +1,105 @@
+import { and, asc, desc, eq, lte } from 'drizzle-orm';
+import type { FadeModel, Outlook, OutlookInput } from '../../sky/outlook/outlook';
+import type { App } from '../app';
+import { writeTransaction } from '../db/writeTransaction';
+import type { Executor } from '../db/database';
+import { alert, stream } from '../db/schema/alerts';
+import { outlook, region, transient } from '../db/schema/transients';
+import { refreshOffers } from '../slots/slotOffers';
+import { telescopeSpecs } from './telescopeSpecs';
+
+/** How far ahead the outlook looks, hours. */
+export const OUTLOOK_SPAN_HOURS = 24;
+
+export type OutlookBasis = Pick<OutlookInput, 't0Ms' | 'centre' | 'points' | 'fade'> & {
+	regionVersion: number;
+};
+
+/** What an outlook starts from: the region in force and the fade of the stream that heard it first. */
+export async function outlookBasis(
+	executor: Executor,
+	transientId: string
+): Promise<OutlookBasis | null> {
+	const [latest] = await executor
+		.select({ t0: transient.t0, region })
+		.from(region)
+		.innerJoin(transient, eq(transient.id, region.transientId))
+		.where(eq(region.transientId, transientId))
+		.orderBy(desc(region.version))
+		.limit(1);
+	const fade = await fadeOf(executor, transientId);
+	if (!latest || !fade) return null;
+	return {
+		t0Ms: latest.t0.getTime(),
+		centre: { raDeg: latest.region.raDeg, decDeg: latest.region.decDeg },
+		points: latest.region.points,
+		fade,
+		regionVersion: latest.region.version
+	};
+}
+
+async function fadeOf(executor: Executor, transientId: string): Promise<FadeModel | null> {
+	const [first] = await executor
+		.select({ fade: stream.fade })
+		.from(alert)
+		.innerJoin(stream, eq(stream.id, alert.streamId))
+		.where(eq(alert.transientId, transientId))
+		.orderBy(desc(alert.live), asc(alert.t0))
+		.limit(1);
+	return first?.fade ?? null;
+}
+
+/** Computes and stores a transient's outlook; one of an older region never replaces a newer one. */
+export async function refreshOutlook(app: App, transientId: string): Promise<void> {
+	const [row] = await app.database
+		.select({ state: transient.state })
+		.from(transient)
+		.where(eq(transient.id, transientId));
+	if (row?.state !== 'open') return;
+	const basis = await outlookBasis(app.database, transientId);
+	if (!basis) return;
+	const computed = await computeOutlookFor(app, basis);
+	await writeTransaction(app, async (tx, change) => {
+		const values = {
+			regionVersion: basis.regionVersion,
+			computedAt: new Date(computed.computedMs),
+			networkCatch: computed.networkCatch,
+			costOfWaitingPoints: computed.costOfWaitingPoints,
+			body: computed
+		};
+		const stored = await tx
+			.insert(outlook)
+			.values({ transientId, ...values })
+			.onConflictDoUpdate({
+				target: outlook.transientId,
+				set: values,
+				setWhere: and(
+					lte(outlook.regionVersion, basis.regionVersion),
+					lte(outlook.computedAt, values.computedAt)
+				)
+			})
+			.returning({ transientId: outlook.transientId });
+		if (stored.length === 0) return;
+		await refreshOffers(tx, transientId, computed, basis.regionVersion, app.now());
+		change.touch(transientId);
+	});
+}
+
+/** An outlook from now, or from `from`, for all telescopes or one. */
+export async function computeOutlookFor(
+	app: App,
+	basis: OutlookBasis,
+	options: { from?: Date; telescopeId?: string } = {}
+): Promise<Outlook> {
+	const from = options.from ?? app.now();
+	const { specs } = await telescopeSpecs(app.database, from, options.telescopeId);
+	return app.compute.outlook({
+		nowMs: from.getTime(),
+		spanHours: OUTLOOK_SPAN_HOURS,
+		t0Ms: basis.t0Ms,
+		centre: basis.centre,
+		points: basis.points,
+		telescopes: specs,
+		fade: basis.fade
+	});
+}

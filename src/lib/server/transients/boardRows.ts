@@ -1,0 +1,257 @@
+import { asc, eq, inArray, sql } from 'drizzle-orm';
+import type {
+	BoardOutlook,
+	BoardPart,
+	BoardRegion,
+	BoardReport,
+	BoardSlot,
+	BoardTransient,
+	PersonRef
+} from '../../domain/board';
+import type { Outlook } from '../../sky/outlook/outlook';
+import type { Executor } from '../db/database';
+import { alert, stream } from '../db/schema/alerts';
+import { telescope } from '../db/schema/network';
+import { person } from '../db/schema/people';
+import { report, slot } from '../db/schema/slots';
+import { outlook, region } from '../db/schema/transients';
+import { whyNot } from '../outlook/limitWords';
+import { headline } from './headline';
+import type { TransientRow } from './transientStore';
+
+type Named = { id: string; name: string; initials: string };
+type TelescopeName = { id: string; code: string; name: string };
+
+/** Everything the board shows of these transients, in their order: one query a table. */
+export async function boardTransients(
+	executor: Executor,
+	rows: TransientRow[]
+): Promise<BoardTransient[]> {
+	if (rows.length === 0) return [];
+	const ids = rows.map((row) => row.id);
+	const [parts, regions, outlooks, slots, reports, people, telescopes] = await Promise.all([
+		executor
+			.select({ alert, stream })
+			.from(alert)
+			.innerJoin(stream, eq(stream.id, alert.streamId))
+			.where(sql`${inArray(alert.transientId, ids)} and ${alert.live}`)
+			.orderBy(asc(alert.receivedAt), asc(alert.id)),
+		latestRegions(executor, ids),
+		executor.select().from(outlook).where(inArray(outlook.transientId, ids)),
+		executor
+			.select()
+			.from(slot)
+			.where(sql`${inArray(slot.transientId, ids)} and ${slot.state} not in ('lapsed', 'released')`)
+			.orderBy(asc(slot.during)),
+		executor
+			.select()
+			.from(report)
+			.where(inArray(report.transientId, ids))
+			.orderBy(asc(report.observedAt)),
+		executor.select({ id: person.id, name: person.name, initials: person.initials }).from(person),
+		executor
+			.select({ id: telescope.id, code: telescope.code, name: telescope.name })
+			.from(telescope)
+	]);
+	const personOf = lookup(people);
+	const telescopeOf = lookup(telescopes);
+	return rows.map((row) => {
+		const own = parts.filter((item) => item.alert.transientId === row.id);
+		const versions = regions.filter((item) => item.transientId === row.id);
+		const stored = outlooks.find((item) => item.transientId === row.id);
+		const ownReports = reports.filter((item) => item.transientId === row.id);
+		return {
+			designation: row.designation,
+			revision: row.revision,
+			state: row.state,
+			isTest: row.isTest,
+			isDrill: row.isDrill,
+			t0: row.t0.toISOString(),
+			firstReceivedAt: row.firstReceivedAt.toISOString(),
+			headline: headline(
+				versions[0]?.area90Deg2 ?? null,
+				own.map((item) => item.stream.streamClass),
+				ownReports.some((item) => item.kind === 'detection')
+			),
+			taken:
+				row.takenBy && row.takenAt
+					? { by: personRef(personOf(row.takenBy)), at: row.takenAt.toISOString() }
+					: null,
+			decision:
+				row.decision && row.decidedBy && row.decidedAt
+					? {
+							decision: row.decision,
+							by: personRef(personOf(row.decidedBy)),
+							at: row.decidedAt.toISOString(),
+							reason: row.decisionReason
+						}
+					: null,
+			parts: own.flatMap(boardPart),
+			region: boardRegion(versions),
+			outlook: stored ? boardOutlook(stored.body, stored.regionVersion, telescopeOf) : null,
+			slots: slots
+				.filter((item) => item.transientId === row.id)
+				.map((item) => boardSlot(item, personOf, telescopeOf)),
+			reports: ownReports.map((item) => boardReport(item, personOf, telescopeOf))
+		};
+	});
+}
+
+function lookup<Row extends { id: string }>(rows: Row[]): (id: string) => Row | undefined {
+	const byId = new Map(rows.map((row) => [row.id, row]));
+	return (id) => byId.get(id);
+}
+
+/** The two newest versions of each transient's region, newest first. */
+async function latestRegions(executor: Executor, ids: string[]) {
+	const columns = {
+		transientId: region.transientId,
+		version: region.version,
+		cause: region.cause,
+		method: region.method,
+		raDeg: region.raDeg,
+		decDeg: region.decDeg,
+		sigmaDeg: region.sigmaDeg,
+		area50Deg2: region.area50Deg2,
+		area90Deg2: region.area90Deg2,
+		equivalentRadiusDeg: region.equivalentRadiusDeg,
+		logOddsAgreement: region.logOddsAgreement
+	};
+	const ranked = executor
+		.select({
+			...columns,
+			place: sql<number>`row_number() over (partition by ${region.transientId} order by ${region.version} desc)`.as(
+				'place'
+			)
+		})
+		.from(region)
+		.where(inArray(region.transientId, ids))
+		.as('ranked');
+	return executor
+		.select()
+		.from(ranked)
+		.where(sql`${ranked.place} <= 2`)
+		.orderBy(ranked.transientId, ranked.place);
+}
+
+type RegionVersion = Awaited<ReturnType<typeof latestRegions>>[number];
+
+function boardRegion([latest, before]: RegionVersion[]): BoardRegion | null {
+	if (!latest) return null;
+	return {
+		version: latest.version,
+		method: latest.method,
+		centre: { raDeg: latest.raDeg, decDeg: latest.decDeg },
+		sigmaDeg: latest.sigmaDeg,
+		area50Deg2: latest.area50Deg2,
+		area90Deg2: latest.area90Deg2,
+		equivalentRadiusDeg: latest.equivalentRadiusDeg,
+		logOddsAgreement: latest.logOddsAgreement,
+		before: before ? { area90Deg2: before.area90Deg2, cause: latest.cause } : null
+	};
+}
+
+function boardPart(item: {
+	alert: typeof alert.$inferSelect;
+	stream: typeof stream.$inferSelect;
+}): BoardPart[] {
+	if (!item.alert.shape) return [];
+	return [
+		{
+			alertId: item.alert.id,
+			packetId: item.alert.packetId,
+			streamCode: item.stream.code,
+			streamName: item.stream.name,
+			streamClass: item.stream.streamClass,
+			receivedAt: item.alert.receivedAt.toISOString(),
+			membership: item.alert.membership,
+			logOdds: item.alert.logOdds,
+			shape: item.alert.shape
+		}
+	];
+}
+
+function boardOutlook(
+	body: Outlook,
+	regionVersion: number,
+	telescopeOf: (id: string) => TelescopeName | undefined
+): BoardOutlook {
+	return {
+		computedAt: new Date(body.computedMs).toISOString(),
+		regionVersion,
+		networkCatch: body.networkCatch,
+		costOfWaitingPoints: body.costOfWaitingPoints,
+		order: body.networkOrder.flatMap((item) => telescopeOf(item.telescopeId)?.code ?? []),
+		rows: body.rows.flatMap((row) => {
+			const code = telescopeOf(row.telescopeId)?.code;
+			if (!code) return [];
+			return [
+				{
+					telescopeCode: code,
+					catch: row.catch,
+					reach: row.reach,
+					opensAt: row.opensMs === null ? null : new Date(row.opensMs).toISOString(),
+					windows: row.windows.map((window) => ({
+						startAt: new Date(window.startMs).toISOString(),
+						endAt: new Date(window.endMs).toISOString(),
+						opensBy: window.opensBy,
+						endsBy: window.endsBy
+					})),
+					whyNot: row.forbidden ? whyNot(row.forbidden) : null,
+					atOpening: row.atOpening,
+					tiles: row.plan.map(({ startMs, ...tile }) => ({
+						...tile,
+						startAt: new Date(startMs).toISOString()
+					})),
+					strip: row.strip
+				}
+			];
+		})
+	};
+}
+
+export function boardSlot(
+	item: typeof slot.$inferSelect,
+	personOf: (id: string) => Named | undefined,
+	telescopeOf: (id: string) => TelescopeName | undefined
+): BoardSlot {
+	return {
+		id: item.id,
+		telescopeCode: telescopeOf(item.telescopeId)?.code ?? '',
+		startAt: item.during.start.toISOString(),
+		endAt: item.during.end.toISOString(),
+		state: item.state,
+		filter: item.filter,
+		exposureS: item.exposureS,
+		catch: item.catch,
+		claimedBy: item.claimedBy ? personRef(personOf(item.claimedBy)) : null,
+		claimedAt: item.claimedAt?.toISOString() ?? null
+	};
+}
+
+function boardReport(
+	item: typeof report.$inferSelect,
+	personOf: (id: string) => Named | undefined,
+	telescopeOf: (id: string) => TelescopeName | undefined
+): BoardReport {
+	const scope = item.telescopeId ? telescopeOf(item.telescopeId) : undefined;
+	return {
+		id: item.id,
+		telescopeCode: scope?.code ?? null,
+		telescopeName: scope?.name ?? null,
+		kind: item.kind,
+		filter: item.filter,
+		observedAt: item.observedAt.toISOString(),
+		magnitude: item.magnitude,
+		magnitudeError: item.magnitudeError,
+		limitMag: item.limitMag,
+		remarks: item.remarks,
+		reportedBy: personRef(personOf(item.reportedBy))
+	};
+}
+
+export function personRef(row: Named | undefined): PersonRef {
+	return row
+		? { id: row.id, name: row.name, initials: row.initials }
+		: { id: '', name: 'somebody', initials: '?' };
+}

@@ -1,0 +1,105 @@
+import { and, desc, eq } from 'drizzle-orm';
+import { jointRegion, type JointRegion } from '../../sky/regions/jointRegion';
+import type { App } from '../app';
+import { liveParts } from '../alerts/alertStore';
+import { logOddsOfAgreement } from '../alerts/association';
+import type { Transaction } from '../db/database';
+import { region, transient } from '../db/schema/transients';
+import { slot } from '../db/schema/slots';
+import type { Change } from '../db/writeTransaction';
+import { requestOutlook } from '../outlook/outlookRequests';
+import { writeJournal } from './journalStore';
+
+/**
+ * Makes the joint region anew from a transient's live alerts, as its next version, and asks for the
+ * outlook. Without live alerts the transient is closed as retracted, its offers lapse.
+ */
+export async function deriveRegion(
+	app: App,
+	tx: Transaction,
+	change: Change,
+	transientId: string,
+	cause: string
+): Promise<void> {
+	change.touch(transientId);
+	const parts = await liveParts(tx, transientId);
+	const first = parts[0];
+	if (!first) return closeAsRetracted(app, tx, transientId);
+
+	const shapes = parts.map((part) => part.shape);
+	// Circles have a closed form; anything else is meshed in a compute thread.
+	const joint = shapes.every((shape) => shape.kind === 'circle')
+		? jointRegion(shapes)
+		: await app.compute.jointRegion(shapes);
+	const t0 = new Date(Math.min(...parts.map((part) => part.t0.getTime())));
+	const [before] = await tx
+		.select({ version: region.version, area90Deg2: region.area90Deg2 })
+		.from(region)
+		.where(eq(region.transientId, transientId))
+		.orderBy(desc(region.version))
+		.limit(1);
+	const version = (before?.version ?? 0) + 1;
+	const now = app.now();
+	await tx.insert(region).values({
+		transientId,
+		version,
+		computedAt: now,
+		cause,
+		alertCount: parts.length,
+		method: joint.method,
+		raDeg: joint.centre.raDeg,
+		decDeg: joint.centre.decDeg,
+		sigmaDeg: joint.sigmaDeg,
+		area50Deg2: joint.area50Deg2,
+		area90Deg2: joint.area90Deg2,
+		equivalentRadiusDeg: joint.equivalentRadiusDeg,
+		logOddsAgreement: logOddsOfAgreement(parts),
+		points: joint.points,
+		moc50: joint.moc50,
+		moc90: joint.moc90
+	});
+	await tx
+		.update(transient)
+		.set({ regionVersion: version, t0, state: 'open' })
+		.where(eq(transient.id, transientId));
+	await writeJournal(tx, {
+		transientId,
+		kind: 'regionChanged',
+		at: now,
+		actorId: null,
+		summary: regionSummary(joint, before?.area90Deg2 ?? null),
+		detail: { version, area90Deg2: joint.area90Deg2, before90Deg2: before?.area90Deg2 ?? null, cause }
+	});
+	await requestOutlook(app, tx, transientId);
+}
+
+function regionSummary(joint: JointRegion, before90Deg2: number | null): string {
+	const area = formatArea(joint.area90Deg2);
+	if (joint.method === 'none') return `The alerts do not overlap; all of them are kept, ${area}`;
+	if (before90Deg2 === null) return `Joint region ${area} (90 %)`;
+	return `Joint region now ${area} (90 %), was ${formatArea(before90Deg2)}`;
+}
+
+/** An area with three significant digits in the unit that suits it. */
+export function formatArea(areaDeg2: number): string {
+	if (areaDeg2 >= 0.01) return `${Number(areaDeg2.toPrecision(3))} deg²`;
+	const arcmin2 = areaDeg2 * 3600;
+	if (arcmin2 >= 0.1) return `${Number(arcmin2.toPrecision(3))} arcmin²`;
+	return `${Number((arcmin2 * 3600).toPrecision(3))} arcsec²`;
+}
+
+async function closeAsRetracted(app: App, tx: Transaction, transientId: string): Promise<void> {
+	const now = app.now();
+	await tx.update(transient).set({ state: 'retracted' }).where(eq(transient.id, transientId));
+	await tx
+		.update(slot)
+		.set({ state: 'lapsed', endedAt: now })
+		.where(and(eq(slot.transientId, transientId), eq(slot.state, 'offered')));
+	await writeJournal(tx, {
+		transientId,
+		kind: 'retracted',
+		at: now,
+		actorId: null,
+		summary: 'Closed as retracted: no live alert is left'
+	});
+}
