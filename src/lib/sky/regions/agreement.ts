@@ -1,11 +1,13 @@
 import { canonicalOrder } from './canonicalOrder';
-import { multiplyParts, prepareParts } from './parts';
+import { agreeingGroups, multiplyParts, prepareParts } from './parts';
 import type { Shape } from './shape';
 
-/** Odds from which an alert joins a transient. */
+/** Posterior odds above which an alert joins a transient. */
 export const JOIN_ODDS = 10;
-/** Odds below which an alert starts a transient of its own. */
+/** Posterior odds below which an alert starts a transient of its own. */
 export const START_ODDS = 1 / 10;
+export const JOIN_LOG_ODDS = Math.log(JOIN_ODDS);
+export const START_LOG_ODDS = Math.log(START_ODDS);
 
 const YEAR_S = 365.25 * 86_400;
 
@@ -26,6 +28,25 @@ export function logBayesFactor(parts: Shape[]): number {
 	return multiplyParts(prepareParts(canonicalOrder(parts))).logBayes;
 }
 
+/**
+ * ln of the Bayes factor for `shape` having the source of `parts`, against a source of its own. Where the
+ * parts contradict each other it may belong to any group of them that agrees, each weighted by its parts.
+ * −Infinity where it overlaps none; never NaN.
+ */
+export function logBayesOfJoining(parts: Shape[], shape: Shape): number {
+	if (parts.length === 0) throw new RangeError('parts is empty; it must hold at least one shape');
+	const prepared = prepareParts(canonicalOrder(parts));
+	const added = prepareParts([shape]);
+	const groups = multiplyParts(prepared).agrees ? [prepared] : agreeingGroups(prepared);
+	const terms = groups.map((group) => {
+		const together = multiplyParts([...group, ...added]).logBayes;
+		return Math.log(group.length / parts.length) + together - multiplyParts(group).logBayes;
+	});
+	const greatest = Math.max(...terms);
+	if (greatest === -Infinity) return -Infinity;
+	return greatest + Math.log(terms.reduce((sum, term) => sum + Math.exp(term - greatest), 0));
+}
+
 /** Unrelated alerts expected within the time window by chance. */
 export function expectedChanceAlerts({ alertsPerYear, windowS }: ChanceRate): number {
 	if (!(alertsPerYear > 0 && alertsPerYear < Infinity)) {
@@ -35,6 +56,11 @@ export function expectedChanceAlerts({ alertsPerYear, windowS }: ChanceRate): nu
 		throw new RangeError(`windowS is ${windowS}; it must be finite and above 0`);
 	}
 	return (alertsPerYear * windowS) / YEAR_S;
+}
+
+/** Natural log of `priorOdds`. */
+export function logPriorOdds(rate: ChanceRate, sharedShare = 1): number {
+	return Math.log(priorOdds(rate, sharedShare));
 }
 
 /**

@@ -4,8 +4,7 @@ import { canonicalOrder } from './canonicalOrder';
 import { closedRegion } from './closedRegion';
 import { keepApart } from './keepApart';
 import { meshRegion } from './meshRegion';
-import { contradicts, linkedGroups } from './overlap';
-import { multiplyParts, prepareParts, type Part, type PartProduct } from './parts';
+import { agreeingGroups, multiplyParts, prepareParts, type Part } from './parts';
 import type { RegionPoints } from './regionPoints';
 import type { Shape } from './shape';
 
@@ -36,32 +35,15 @@ export type JointRegion = {
  */
 export function jointRegion(parts: Shape[]): JointRegion {
 	if (parts.length === 0) throw new RangeError('parts is empty; it must hold at least one shape');
-	const joint = combine(prepareParts(canonicalOrder(parts)));
-	return joint.region();
+	return regionOf(prepareParts(canonicalOrder(parts)));
 }
 
-type Combination = { agrees: boolean; region: () => JointRegion };
-
-function combine(parts: Part[]): Combination {
+function regionOf(parts: Part[]): JointRegion {
 	const product = multiplyParts(parts);
-	if (!contradicts(parts.length, product.halfChi2, product.logBayes)) {
-		return { agrees: true, region: () => regionOf(product) };
+	if (product.agrees) {
+		return product.kind === 'fisher' ? closedRegion(product) : meshRegion(product.mesh.cells);
 	}
-	return { agrees: false, region: () => regionApart(parts) };
-}
-
-function regionOf(product: PartProduct): JointRegion {
-	return product.kind === 'fisher' ? closedRegion(product) : meshRegion(product.mesh.cells);
-}
-
-function regionApart(parts: Part[]): JointRegion {
-	const pair = (i: number, j: number) => [parts[i], parts[j]].filter((part) => part !== undefined);
-	const groups = linkedGroups(parts.length, (i, j) => combine(pair(i, j)).agrees).map((group) =>
-		group.flatMap((i) => parts[i] ?? [])
-	);
-	// A chain that agrees pair by pair and contradicts itself as a whole has no best subset: all stand alone.
-	const apart = groups.length > 1 ? groups : parts.map((part) => [part]);
 	return keepApart(
-		apart.map((group) => ({ region: combine(group).region(), weight: group.length }))
+		agreeingGroups(parts).map((group) => ({ region: regionOf(group), weight: group.length }))
 	);
 }
