@@ -64,7 +64,10 @@ export const citationSchema = z.strictObject({
 
 /** UTC instant between 1990 and 2100, ISO 8601 with a zone. */
 export const instantSchema = z.iso
-	.datetime({ offset: true, error: 'must be an ISO 8601 time with its zone, as 2026-12-01T03:41:27Z' })
+	.datetime({
+		offset: true,
+		error: 'must be an ISO 8601 time with its zone, as 2026-12-01T03:41:27Z'
+	})
 	.refine((text) => {
 		const year = new Date(text).getUTCFullYear();
 		return year >= 1990 && year < 2100;

@@ -53,10 +53,12 @@ export const reportSchema = z
 	})
 	.superRefine((report, context) => {
 		const need = (path: 'magnitude' | 'magnitudeError' | 'limitMag' | 'filter', why: string) => {
-			if (report[path] === undefined) context.addIssue({ code: 'custom', path: [path], message: why });
+			if (report[path] === undefined)
+				context.addIssue({ code: 'custom', path: [path], message: why });
 		};
 		const refuse = (path: 'magnitude' | 'limitMag', why: string) => {
-			if (report[path] !== undefined) context.addIssue({ code: 'custom', path: [path], message: why });
+			if (report[path] !== undefined)
+				context.addIssue({ code: 'custom', path: [path], message: why });
 		};
 		if (report.kind === 'detection') {
 			need('magnitude', 'is needed for a detection');

@@ -107,12 +107,17 @@ export async function receiveAlert(
 		});
 		const touched = new Set([home.id, ...placement.withdrawn.map((item) => item.transientId)]);
 		for (const id of touched) {
-			await deriveRegion(app, tx, change, id, `${settings.name} ${packet.packetId}, serial ${packet.serial}`);
+			await deriveRegion(
+				app,
+				tx,
+				change,
+				id,
+				`${settings.name} ${packet.packetId}, serial ${packet.serial}`
+			);
 		}
 		return { receipt: receiptOf(row!, settings.code, home.designation), isNew: true };
 	});
 }
-
 
 function sameOrConflict(
 	known: { alert: AlertRow; designation: string; body: Buffer; sha256: string },
@@ -134,10 +139,7 @@ function sameOrConflict(
 /** The same packet may be written with other spacing or key order. */
 function sameContent(body: Buffer, packet: AlertPacket): boolean {
 	try {
-		return isDeepStrictEqual(
-			alertPacketSchema.parse(JSON.parse(body.toString('utf8'))),
-			packet
-		);
+		return isDeepStrictEqual(alertPacketSchema.parse(JSON.parse(body.toString('utf8'))), packet);
 	} catch {
 		return false;
 	}
@@ -191,7 +193,10 @@ function arrivalSummary(streamName: string, packet: AlertPacket, placement: Plac
 }
 
 function formatOdds(logOdds: number): string {
-	if (logOdds >= 0) return logOdds > 13.8 ? 'over 1,000,000 : 1' : `${Number(Math.exp(logOdds).toPrecision(2))} : 1`;
+	if (logOdds >= 0)
+		return logOdds > 13.8
+			? 'over 1,000,000 : 1'
+			: `${Number(Math.exp(logOdds).toPrecision(2))} : 1`;
 	return `1 : ${Number(Math.exp(-logOdds).toPrecision(2))}`;
 }
 

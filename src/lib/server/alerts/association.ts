@@ -3,7 +3,8 @@ import {
 	JOIN_LOG_ODDS,
 	START_LOG_ODDS,
 	logBayesFactor,
-	logPriorOdds
+	logBayesOfJoining,
+	priorOdds
 } from '../../sky/regions/agreement';
 import type { Shape } from '../../sky/regions/shape';
 import type { Transaction } from '../db/database';
@@ -55,7 +56,9 @@ export async function placeAlert(tx: Transaction, arrival: Arrival): Promise<Pla
 		citing.some(({ relation }) => relation !== 'followup');
 	const withdrawn = [
 		...serials.filter((row) => row.serial < packet.serial && row.live),
-		...cited.filter(({ alert, relation }) => relation !== 'followup' && alert.live).map((c) => c.alert)
+		...cited
+			.filter(({ alert, relation }) => relation !== 'followup' && alert.live)
+			.map((c) => c.alert)
 	];
 	const known = serials[0] ?? cited[0]?.alert ?? citing[0]?.alert;
 	const live = packet.kind !== 'retraction' && !overtaken;
@@ -111,26 +114,27 @@ export function logOddsOfBelonging(
 	shape: Shape,
 	arrival: Pick<Arrival, 'alertsPerYear' | 'coincidenceWindowS'>
 ): number {
-	const shapes = parts.map((part) => part.shape);
-	const together = logBayesFactor([...shapes, shape]) - logBayesFactor(shapes);
-	return (
-		together +
-		logPriorOdds({
-			alertsPerYear: arrival.alertsPerYear,
-			windowS: arrival.coincidenceWindowS
-		})
+	const together = logBayesOfJoining(
+		parts.map((part) => part.shape),
+		shape
 	);
+	return finite(together + logPrior(arrival));
 }
 
 /** Natural log of the odds that all live parts come from one source; null with fewer than two. */
 export function logOddsOfAgreement(parts: LivePart[]): number | null {
 	if (parts.length < 2) return null;
-	const prior = parts
-		.slice(1)
-		.reduce(
-			(sum, part) =>
-				sum + logPriorOdds({ alertsPerYear: part.alertsPerYear, windowS: part.coincidenceWindowS }),
-			0
-		);
-	return logBayesFactor(parts.map((part) => part.shape)) + prior;
+	const prior = parts.slice(1).reduce((sum, part) => sum + logPrior(part), 0);
+	return finite(logBayesFactor(parts.map((part) => part.shape)) + prior);
+}
+
+function logPrior(source: Pick<LivePart, 'alertsPerYear' | 'coincidenceWindowS'>): number {
+	return Math.log(
+		priorOdds({ alertsPerYear: source.alertsPerYear, windowS: source.coincidenceWindowS })
+	);
+}
+
+/** Regions that do not overlap at all have odds of nought; JSON has no infinity to say so. */
+function finite(logOdds: number): number {
+	return Math.max(logOdds, -1e6);
 }

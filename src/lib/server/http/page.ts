@@ -3,13 +3,19 @@ import { DomainError, type FieldError } from '../domainError';
 import { statusOf } from './problem';
 
 /** Runs a page's load: refusals become the error page, or the way to sign in. */
-export async function loadPage<T>(event: Pick<RequestEvent, 'url'>, body: () => Promise<T>): Promise<T> {
+export async function loadPage<T>(
+	event: Pick<RequestEvent, 'url'>,
+	body: () => Promise<T>
+): Promise<T> {
 	try {
 		return await body();
 	} catch (thrown) {
 		if (!(thrown instanceof DomainError)) throw thrown;
 		if (thrown.code === 'notSignedIn') {
-			redirect(303, `/auth/sign-in?to=${encodeURIComponent(event.url.pathname + event.url.search)}`);
+			redirect(
+				303,
+				`/auth/sign-in?to=${encodeURIComponent(event.url.pathname + event.url.search)}`
+			);
 		}
 		error(statusOf(thrown.code), thrown.message);
 	}

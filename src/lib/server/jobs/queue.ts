@@ -77,7 +77,11 @@ export function bossQueue(boss: PgBoss): Queue {
 }
 
 /** Runs a text with $1 … placeholders on a Drizzle executor. */
-async function executeOn(tx: Executor, text: string, values: unknown[]): Promise<{ rows: unknown[] }> {
+async function executeOn(
+	tx: Executor,
+	text: string,
+	values: unknown[]
+): Promise<{ rows: unknown[] }> {
 	const pieces = text.split(/\$(\d+)/);
 	const query = sql.empty();
 	pieces.forEach((piece, index) => {

@@ -27,11 +27,7 @@ export async function prepareQueues(boss: PgBoss): Promise<void> {
 	}
 }
 
-async function startWorkers<Payload>(
-	app: App,
-	boss: PgBoss,
-	job: Job<Payload>
-): Promise<string[]> {
+async function startWorkers<Payload>(app: App, boss: PgBoss, job: Job<Payload>): Promise<string[]> {
 	const ids: string[] = [];
 	for (let index = 0; index < job.concurrency; index++) {
 		const id = await boss.work(
@@ -52,7 +48,10 @@ async function startWorkers<Payload>(
 	return ids;
 }
 
-async function listenForJobs(app: App, heard: (name: string) => void): Promise<() => Promise<void>> {
+async function listenForJobs(
+	app: App,
+	heard: (name: string) => void
+): Promise<() => Promise<void>> {
 	const client = new pg.Client({ connectionString: app.config.databaseUrl });
 	client.on('notification', (message) => heard(message.payload ?? ''));
 	// Polling goes on without it; the process must not end because the wire was cut.

@@ -15,19 +15,13 @@ export const LEAST_SLOT_MINUTES = 10;
 const LAPSE_AFTER_MINUTES = 60;
 
 /** The time a row's plan takes from its first window's opening, at least ten minutes, inside the window. */
-export function proposedRange(
-	row: OutlookRow,
-	fromMs: number
-): { start: Date; end: Date } | null {
+export function proposedRange(row: OutlookRow, fromMs: number): { start: Date; end: Date } | null {
 	const window = row.windows.find((item) => item.endMs > fromMs);
 	if (!window) return null;
 	const startMs = Math.max(window.startMs, fromMs);
 	const last = row.plan.filter((tile) => tile.startMs < window.endMs).at(-1);
 	const planEndMs = last ? last.startMs + last.exposureS * 1000 : startMs;
-	const endMs = Math.min(
-		window.endMs,
-		Math.max(planEndMs, startMs + LEAST_SLOT_MINUTES * 60_000)
-	);
+	const endMs = Math.min(window.endMs, Math.max(planEndMs, startMs + LEAST_SLOT_MINUTES * 60_000));
 	return endMs > startMs ? { start: new Date(startMs), end: new Date(endMs) } : null;
 }
 

@@ -51,7 +51,10 @@ export async function claimSlot(
 	const filter = claim.filter ?? scope.depths[0]?.filter ?? '';
 	if (!scope.depths.some((depth) => depth.filter === filter)) {
 		throw new DomainError('invalid', `${scope.name} has no filter ${filter}.`, [
-			{ pointer: '/filter', detail: `must be one of ${scope.depths.map((d) => d.filter).join(', ')}` }
+			{
+				pointer: '/filter',
+				detail: `must be one of ${scope.depths.map((d) => d.filter).join(', ')}`
+			}
 		]);
 	}
 	const basis = await outlookBasis(app.database, target.id);
@@ -85,7 +88,12 @@ export async function claimSlot(
 				at: now,
 				actorId: actor.id,
 				summary: `Claimed ${scope.name} from ${clock(range.start)} to ${clock(range.end)} UTC`,
-				detail: { slotId, telescopeId: scope.id, telescope: scope.code, sinceT0: sinceT0(now.getTime() - target.t0.getTime()) }
+				detail: {
+					slotId,
+					telescopeId: scope.id,
+					telescope: scope.code,
+					sinceT0: sinceT0(now.getTime() - target.t0.getTime())
+				}
 			});
 			return { slotId };
 		});
@@ -263,4 +271,3 @@ export async function lockOwnSlot(
 function clock(at: Date): string {
 	return at.toISOString().slice(11, 16);
 }
-

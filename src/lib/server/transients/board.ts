@@ -52,23 +52,24 @@ async function makeBoard(app: App): Promise<Board> {
 			const open = await tx.select().from(transient).where(eq(transient.state, 'open'));
 			const transients = (await boardTransients(tx, open)).sort(byCostOfWaiting);
 			const { rows } = await telescopeSpecs(tx, now);
-			const closures = await tx.select().from(closure).where(sql`${closure.during} @> ${now.toISOString()}::timestamptz`);
-			const telescopes = rows.map(
-				(item): BoardTelescope => ({
-					code: item.code,
-					name: item.name,
-					site: item.site,
-					apertureM: item.apertureM,
-					latDeg: item.latDeg,
-					lonDeg: item.lonDeg,
-					minAltDeg: item.limits.minAltDeg,
-					sunDistanceDeg: item.limits.sunDistanceDeg,
-					filters: item.depths.map((depth) => depth.filter),
-					exposureS: item.exposureS,
-					detectors: item.detectors,
-					closed: closedOf(closures, item.id)
-				})
-			);
+			const closures = await tx
+				.select()
+				.from(closure)
+				.where(sql`${closure.during} @> ${now.toISOString()}::timestamptz`);
+			const telescopes = rows.map((item): BoardTelescope => ({
+				code: item.code,
+				name: item.name,
+				site: item.site,
+				apertureM: item.apertureM,
+				latDeg: item.latDeg,
+				lonDeg: item.lonDeg,
+				minAltDeg: item.limits.minAltDeg,
+				sunDistanceDeg: item.limits.sunDistanceDeg,
+				filters: item.depths.map((depth) => depth.filter),
+				exposureS: item.exposureS,
+				detectors: item.detectors,
+				closed: closedOf(closures, item.id)
+			}));
 			return {
 				revision: row!.value,
 				serverNow: now.toISOString(),

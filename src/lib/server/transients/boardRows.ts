@@ -120,9 +120,10 @@ async function latestRegions(executor: Executor, ids: string[]) {
 	const ranked = executor
 		.select({
 			...columns,
-			place: sql<number>`row_number() over (partition by ${region.transientId} order by ${region.version} desc)`.as(
-				'place'
-			)
+			place:
+				sql<number>`row_number() over (partition by ${region.transientId} order by ${region.version} desc)`.as(
+					'place'
+				)
 		})
 		.from(region)
 		.where(inArray(region.transientId, ids))

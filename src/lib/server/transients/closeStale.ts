@@ -48,7 +48,8 @@ export async function closeStaleTransients(app: App): Promise<void> {
 				kind: 'closed',
 				at: now,
 				actorId: null,
-				summary: decision === 'drop' ? 'Closed after it was dropped' : `Closed ${OPEN_HOURS} h after T0`
+				summary:
+					decision === 'drop' ? 'Closed after it was dropped' : `Closed ${OPEN_HOURS} h after T0`
 			});
 		}
 		await lapseSlots(tx, change, now);

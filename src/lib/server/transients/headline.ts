@@ -20,6 +20,7 @@ export function headline(
 		.map((name) => ({ name, count: classes.filter((item) => item === name).length }))
 		.filter(({ count }) => count > 0)
 		.map(({ name, count }) => `${count} ${PART_WORDS[name][count === 1 ? 0 : 1]}`);
-	const list = counts.length > 1 ? `${counts.slice(0, -1).join(', ')} and ${counts.at(-1)}` : counts[0];
+	const list =
+		counts.length > 1 ? `${counts.slice(0, -1).join(', ')} and ${counts.at(-1)}` : counts[0];
 	return `${area} from ${list}`;
 }

@@ -68,7 +68,12 @@ export async function deriveRegion(
 		at: now,
 		actorId: null,
 		summary: regionSummary(joint, before?.area90Deg2 ?? null),
-		detail: { version, area90Deg2: joint.area90Deg2, before90Deg2: before?.area90Deg2 ?? null, cause }
+		detail: {
+			version,
+			area90Deg2: joint.area90Deg2,
+			before90Deg2: before?.area90Deg2 ?? null,
+			cause
+		}
 	});
 	await requestOutlook(app, tx, transientId);
 }

@@ -49,7 +49,10 @@ export const transient = pgTable(
 		index('transient_state').on(table.state),
 		index('transient_t0').on(table.t0),
 		check('transient_taken_whole', sql`(${table.takenBy} is null) = (${table.takenAt} is null)`),
-		check('transient_decided_whole', sql`(${table.decision} is null) = (${table.decidedAt} is null)`)
+		check(
+			'transient_decided_whole',
+			sql`(${table.decision} is null) = (${table.decidedAt} is null)`
+		)
 	]
 );
 
@@ -125,6 +128,12 @@ export const journal = pgTable(
 /** One row: the number of the last change to anything the board shows. Its lock orders the changes. */
 export const boardRevision = pgTable(
 	'board_revision',
-	{ only: boolean('only').notNull().default(true), value: bigint('value', { mode: 'number' }).notNull() },
-	(table) => [primaryKey({ columns: [table.only] }), check('board_revision_one', sql`${table.only}`)]
+	{
+		only: boolean('only').notNull().default(true),
+		value: bigint('value', { mode: 'number' }).notNull()
+	},
+	(table) => [
+		primaryKey({ columns: [table.only] }),
+		check('board_revision_one', sql`${table.only}`)
+	]
 );

@@ -1,0 +1,6 @@
+import { refreshOutlookJob } from '../outlook/refreshOutlookJob';
+import { refreshOutlooksJob } from '../outlook/refreshOutlooksJob';
+import type { Job } from './queue';
+
+/** Every kind of job. The payload type is each job's own business. */
+export const ALL_JOBS = [refreshOutlookJob, refreshOutlooksJob] as unknown as Job<unknown>[];

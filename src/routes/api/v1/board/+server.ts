@@ -1,0 +1,32 @@
+import { boardFor, currentRevision } from '$lib/server/transients/board';
+import { requirePermission } from '$lib/server/actor';
+import { answer } from '$lib/server/http/api';
+import { json } from '@sveltejs/kit';
+import type { RequestHandler } from './$types';
+
+/** The board; 304 when nothing changed since the revision in If-None-Match. `?since=` narrows it. */
+export const GET: RequestHandler = ({ locals, request, url }) =>
+	answer(async () => {
+		requirePermission(locals.actor, 'viewBoard');
+		const revision = await currentRevision(locals.app);
+		const headers = (value: number) => ({
+			etag: `"${value}"`,
+			'cache-control': 'private, no-cache',
+			vary: 'Cookie'
+		});
+		if (matches(request.headers.get('if-none-match'), `"${revision}"`)) {
+			return new Response(null, { status: 304, headers: headers(revision) });
+		}
+		const since = Number(url.searchParams.get('since') ?? 0);
+		const board = await boardFor(locals.app, locals.actor, Number.isSafeInteger(since) ? since : 0);
+		return json(board, { headers: headers(board.revision) });
+	});
+
+/** If-None-Match as RFC 9110 section 13.1.2 has it: a list of tags, weak ones included, or `*`. */
+function matches(header: string | null, tag: string): boolean {
+	if (!header) return false;
+	return header
+		.split(',')
+		.map((item) => item.trim().replace(/^W\//, ''))
+		.some((item) => item === '*' || item === tag);
+}

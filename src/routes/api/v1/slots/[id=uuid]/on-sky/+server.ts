@@ -1,0 +1,9 @@
+import { answer } from '$lib/server/http/api';
+import { startSlot } from '$lib/server/slots/slotService';
+import type { RequestHandler } from './$types';
+
+export const POST: RequestHandler = ({ locals, params }) =>
+	answer(async () => {
+		await startSlot(locals.app, locals.actor, params.id);
+		return { slotId: params.id };
+	});

@@ -1,0 +1,14 @@
+import { reportSchema } from '$lib/domain/slot';
+import { requirePermission } from '$lib/server/actor';
+import { answer, readJson } from '$lib/server/http/api';
+import { reportSlot } from '$lib/server/reports/reportService';
+import { json } from '@sveltejs/kit';
+import type { RequestHandler } from './$types';
+
+export const POST: RequestHandler = (event) =>
+	answer(async () => {
+		const { app, actor } = event.locals;
+		requirePermission(actor, 'reportSlot');
+		const input = await readJson(event, reportSchema);
+		return json(await reportSlot(app, actor, event.params.id, input), { status: 201 });
+	});
