@@ -1,0 +1,102 @@
+import { DEG_PER_RAD, RAD_PER_DEG, type Equatorial } from '../angle';
+import type { RegionPoints } from '../regions/jointRegion';
+import { toEquatorial } from '../vector';
+
+const NEIGHBOURS = 6;
+const COVERED_SHARE = 0.9;
+
+/** A region's points as unit vectors (ICRS), with the sky area that each stands for. */
+export type RegionSample = {
+	count: number;
+	x: Float64Array;
+	y: Float64Array;
+	z: Float64Array;
+	probability: Float64Array;
+	/** Estimated from the six nearest points; too large at the rim. */
+	areaDeg2: Float64Array;
+	/** Indices from the densest point on. */
+	byDensity: Int32Array;
+	/** Points of the 90 % region: how many of `byDensity` from its start. */
+	coreCount: number;
+	total: number;
+	/** Probability-weighted middle. */
+	middle: Equatorial;
+};
+
+/** Prepares a region's points once for all telescopes; throws a RangeError when there is none or a weight is bad. */
+export function regionSample(points: RegionPoints): RegionSample {
+	const count = points.raDeg.length;
+	if (count === 0 || points.decDeg.length !== count || points.probability.length !== count) {
+		throw new RangeError(
+			`points has ${count} raDeg, ${points.decDeg.length} decDeg and ${points.probability.length} probability; all must be equal and above 0`
+		);
+	}
+	const x = new Float64Array(count);
+	const y = new Float64Array(count);
+	const z = new Float64Array(count);
+	const probability = Float64Array.from(points.probability);
+	const sum = { x: 0, y: 0, z: 0 };
+	for (let i = 0; i < count; i += 1) {
+		const raRad = points.raDeg[i]! * RAD_PER_DEG;
+		const decRad = points.decDeg[i]! * RAD_PER_DEG;
+		x[i] = Math.cos(decRad) * Math.cos(raRad);
+		y[i] = Math.cos(decRad) * Math.sin(raRad);
+		z[i] = Math.sin(decRad);
+		const weight = probability[i]!;
+		if (!(weight >= 0 && Number.isFinite(weight) && Number.isFinite(x[i]! + y[i]! + z[i]!))) {
+			throw new RangeError(
+				`points[${i}] has probability ${weight}; it must be 0 or above, with a finite position`
+			);
+		}
+		sum.x += weight * x[i]!;
+		sum.y += weight * y[i]!;
+		sum.z += weight * z[i]!;
+	}
+	const total = probability.reduce((all, weight) => all + weight, 0);
+	const areaDeg2 = pointAreas(x, y, z);
+	const byDensity = Int32Array.from({ length: count }, (_, i) => i).sort(
+		(a, b) => probability[b]! / areaDeg2[b]! - probability[a]! / areaDeg2[a]! || a - b
+	);
+	let coreCount = 0;
+	for (let held = 0; coreCount < count && held < COVERED_SHARE * total - 1e-12; coreCount += 1) {
+		held += probability[byDensity[coreCount]!]!;
+	}
+	const length = Math.hypot(sum.x, sum.y, sum.z);
+	const best = byDensity[0]!;
+	const middle =
+		length > 1e-6 * total
+			? toEquatorial(sum)
+			: { raDeg: points.raDeg[best]!, decDeg: points.decDeg[best]! };
+	return { count, x, y, z, probability, areaDeg2, byDensity, coreCount, total, middle };
+}
+
+/** Area per point, square degrees: a disc to the sixth nearest point holds six points' areas. */
+function pointAreas(x: Float64Array, y: Float64Array, z: Float64Array): Float64Array {
+	const count = x.length;
+	const neighbours = Math.min(NEIGHBOURS, count - 1);
+	const areas = new Float64Array(count);
+	if (neighbours === 0) return areas.fill(1e-9);
+	const nearest = new Float64Array(neighbours);
+	for (let i = 0; i < count; i += 1) {
+		nearest.fill(Infinity);
+		const [xi, yi, zi] = [x[i]!, y[i]!, z[i]!];
+		let farthest = Infinity;
+		for (let j = 0; j < count; j += 1) {
+			const dx = x[j]! - xi;
+			const dy = y[j]! - yi;
+			const dz = z[j]! - zi;
+			const chord2 = dx * dx + dy * dy + dz * dz;
+			if (chord2 >= farthest || j === i) continue;
+			let slot = neighbours - 1;
+			while (slot > 0 && nearest[slot - 1]! > chord2) {
+				nearest[slot] = nearest[slot - 1]!;
+				slot -= 1;
+			}
+			nearest[slot] = chord2;
+			farthest = nearest[neighbours - 1]!;
+		}
+		// π·chord² is the exact area of a cap of that chord.
+		areas[i] = Math.max(1e-12, (Math.PI * farthest * DEG_PER_RAD * DEG_PER_RAD) / neighbours);
+	}
+	return areas;
+}
