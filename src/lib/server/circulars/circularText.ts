@@ -73,14 +73,14 @@ function alerts({ alerts }: CircularRecord): string[] {
 		'Alerts',
 		...alerts.flatMap((alert) =>
 			item(
-				[
-					`${alert.streamName} ${alert.packetId}, received ${utcSecond(alert.receivedAt)}`,
-					alert.shape ? shapeInWords(alert.shape) : null,
-					alert.significance === null ? null : `significance ${alert.significance}`,
-					alert.live ? null : 'withdrawn or replaced since'
-				]
-					.filter(Boolean)
-					.join(': ')
+				`${alert.streamName} ${alert.packetId}, received ${utcSecond(alert.receivedAt)}: ` +
+					[
+						alert.shape ? shapeInWords(alert.shape) : 'no position',
+						alert.significance === null ? null : `significance ${alert.significance}`,
+						alert.live ? null : 'withdrawn or replaced since'
+					]
+						.filter(Boolean)
+						.join(', ')
 			)
 		)
 	];
