@@ -1,4 +1,4 @@
-import { asc, eq, inArray, sql } from 'drizzle-orm';
+import { and, asc, eq, inArray, notInArray, sql } from 'drizzle-orm';
 import type {
 	BoardOutlook,
 	BoardPart,
@@ -29,30 +29,31 @@ export async function boardTransients(
 ): Promise<BoardTransient[]> {
 	if (rows.length === 0) return [];
 	const ids = rows.map((row) => row.id);
-	const [parts, regions, outlooks, slots, reports, people, telescopes] = await Promise.all([
-		executor
-			.select({ alert, stream })
-			.from(alert)
-			.innerJoin(stream, eq(stream.id, alert.streamId))
-			.where(sql`${inArray(alert.transientId, ids)} and ${alert.live}`)
-			.orderBy(asc(alert.receivedAt), asc(alert.id)),
-		latestRegions(executor, ids),
-		executor.select().from(outlook).where(inArray(outlook.transientId, ids)),
-		executor
-			.select()
-			.from(slot)
-			.where(sql`${inArray(slot.transientId, ids)} and ${slot.state} not in ('lapsed', 'released')`)
-			.orderBy(asc(slot.during)),
-		executor
-			.select()
-			.from(report)
-			.where(inArray(report.transientId, ids))
-			.orderBy(asc(report.observedAt)),
-		executor.select({ id: person.id, name: person.name, initials: person.initials }).from(person),
-		executor
-			.select({ id: telescope.id, code: telescope.code, name: telescope.name })
-			.from(telescope)
-	]);
+	// One after the other: on a transaction's single connection they can't overlap anyway.
+	const parts = await executor
+		.select({ alert, stream })
+		.from(alert)
+		.innerJoin(stream, eq(stream.id, alert.streamId))
+		.where(and(inArray(alert.transientId, ids), eq(alert.live, true)))
+		.orderBy(asc(alert.receivedAt), asc(alert.id));
+	const regions = await latestRegions(executor, ids);
+	const outlooks = await executor.select().from(outlook).where(inArray(outlook.transientId, ids));
+	const slots = await executor
+		.select()
+		.from(slot)
+		.where(and(inArray(slot.transientId, ids), notInArray(slot.state, ['lapsed', 'released'])))
+		.orderBy(asc(slot.during));
+	const reports = await executor
+		.select()
+		.from(report)
+		.where(inArray(report.transientId, ids))
+		.orderBy(asc(report.observedAt));
+	const people = await executor
+		.select({ id: person.id, name: person.name, initials: person.initials })
+		.from(person);
+	const telescopes = await executor
+		.select({ id: telescope.id, code: telescope.code, name: telescope.name })
+		.from(telescope);
 	const personOf = lookup(people);
 	const telescopeOf = lookup(telescopes);
 	return rows.map((row) => {
