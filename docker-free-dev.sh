@@ -75,7 +75,7 @@ on_exit() {
 	set +e
 	if [[ -n ${STOPPING_TEXT:-} ]]; then printf '\n%s\n' "$STOPPING_TEXT"; fi
 	end_everything
-	rm -f "$RUN_DIR/start.pid"
+	rm -f "$RUN_DIR/start.pid" "$RUN_DIR/place"
 	exit "$status"
 }
 

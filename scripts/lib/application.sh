@@ -40,7 +40,6 @@ export_environment() {
 	DUSKLINE_PUSH_PORT=$PUSH_PORT
 	DUSKLINE_PUSH_PAGE_PORT=$PUSH_PAGE_PORT
 	DUSKLINE_PUSH_STATE=$LOCAL/push
-	NODE_EXTRA_CA_CERTS=$LOCAL/push/certificate.pem
 	set +a
 	# The application's own PORT; each fake has a variable of its own.
 	export PORT
@@ -68,9 +67,8 @@ migrate_and_seed() {
 start_fakes() {
 	: >"$LOG_DIR/mailbox.log"
 	: >"$LOG_DIR/push.log"
-	# Made by the push service before it listens; until then a Node.js process would warn of its absence.
-	NODE_EXTRA_CA_CERTS='' spawn push "$LOG_DIR/push.log" node --import tsx fakes/pushService.ts
-	NODE_EXTRA_CA_CERTS='' spawn mailbox "$LOG_DIR/mailbox.log" node --import tsx fakes/mailbox.ts
+	spawn push "$LOG_DIR/push.log" node --import tsx fakes/pushService.ts
+	spawn mailbox "$LOG_DIR/mailbox.log" node --import tsx fakes/mailbox.ts
 	wait_until_answers mailbox "$MAILBOX_PORT" / 30 "$LOG_DIR/mailbox.log"
 	wait_until_answers push "$PUSH_PAGE_PORT" / 30 "$LOG_DIR/push.log"
 }
@@ -117,7 +115,8 @@ install_build() {
 
 start_application() {
 	: >"$LOG_DIR/app.log"
-	NODE_ENV=production spawn app "$LOG_DIR/app.log" env -C "$LOCAL/app" node build
+	NODE_ENV=production NODE_EXTRA_CA_CERTS=$LOCAL/push/certificate.pem \
+		spawn app "$LOG_DIR/app.log" env -C "$LOCAL/app" node build
 	wait_until_answers app "$PORT" /healthz 60 "$LOG_DIR/app.log"
 }
 
@@ -130,7 +129,7 @@ start_watching() {
 		die 'The worker build failed; its last lines are above.'
 	}
 	spawn workers "$LOG_DIR/workers.log" node node_modules/vite/bin/vite.js build -c vite.workers.config.ts --watch
-	spawn app - node node_modules/vite/bin/vite.js dev --host 127.0.0.1 --port "$PORT" --strictPort
+	NODE_EXTRA_CA_CERTS=$LOCAL/push/certificate.pem spawn app - node node_modules/vite/bin/vite.js dev --host 127.0.0.1 --port "$PORT" --strictPort
 	wait_until_answers app "$PORT" /healthz 60 "$LOG_DIR/workers.log"
 }
 
@@ -139,7 +138,7 @@ start_feed() {
 		say 'The demo feed is off (DUSKLINE_FEED=off).'
 		return 0
 	}
-	NODE_EXTRA_CA_CERTS='' spawn feed - node --import tsx fakes/demoFeed.ts
+	spawn feed - node --import tsx fakes/demoFeed.ts
 }
 
 print_welcome() {
