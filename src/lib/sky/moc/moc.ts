@@ -1,6 +1,6 @@
 /** Multi-order coverage: sets of sky cells as ranges at order 29 (IVOA MOC 2.0). */
 import { SKY_DEG2, type Equatorial } from '../angle';
-import { cellMocRange, MOC_ORDER, pixelAtMocOrder } from '../healpix/healpix';
+import { MOC_ORDER, pixelAtMocOrder } from '../healpix/healpix';
 
 /** A set of sky pixels at HEALPix order 29, NESTED, as sorted disjoint half-open ranges. */
 export type MocRanges = [start: bigint, end: bigint][];
@@ -32,10 +32,41 @@ export function normalForm(ranges: MocRanges): MocRanges {
 }
 
 /** The set covered by cells of any order (0 to 24). */
-export function mocFromCells(cells: Iterable<{ order: number; pixel: number }>): MocRanges {
+export function mocFromCells(cells: { order: number; pixel: number }[]): MocRanges {
+	const finest = cells.reduce((most, cell) => Math.max(most, cell.order), 0);
+	// Merged as doubles, exact to order 24, because a bigint for every cell would take most of the time.
+	const starts = Float64Array.from(cells, ({ order, pixel }) => pixel * 4 ** (finest - order));
+	const sizes = Float64Array.from(cells, ({ order }) => 4 ** (finest - order));
+	const index = Uint32Array.from(starts.keys());
+	index.sort((a, b) => (starts[a] ?? 0) - (starts[b] ?? 0));
+	const shift = BigInt(2 * (MOC_ORDER - finest));
 	const ranges: MocRanges = [];
-	for (const { order, pixel } of cells) ranges.push(cellMocRange(order, pixel));
-	return normalForm(ranges);
+	let from = 0;
+	let to = 0;
+	const close = () => {
+		if (to > from) ranges.push([BigInt(from) << shift, BigInt(to) << shift]);
+	};
+	for (const i of index) {
+		const start = starts[i] ?? 0;
+		if (start > to) {
+			close();
+			from = to = start;
+		}
+		to = Math.max(to, start + (sizes[i] ?? 0));
+	}
+	close();
+	return ranges;
+}
+
+/** The set grown to whole cells of coarser orders until it has at most `maxRanges` ranges (at least 12). */
+export function coarsened(set: MocRanges, maxRanges: number): MocRanges {
+	let grown = set;
+	for (let bits = 2n; grown.length > Math.max(12, maxRanges); bits += 2n) {
+		grown = normalForm(
+			set.map(([start, end]) => [(start >> bits) << bits, -((-end >> bits) << bits)])
+		);
+	}
+	return grown;
 }
 
 /** Every position in any of the sets. */

@@ -1,11 +1,14 @@
 import { DEG_PER_RAD } from '../angle';
 import { cellAreaSr } from '../healpix/healpix';
-import { mocFromCells, type MocRanges } from '../moc/moc';
+import { coarsened, mocFromCells, type MocRanges } from '../moc/moc';
 import { angleBetweenDeg, type Vector } from '../vector';
 import type { MeshCell } from './mesh';
 
 /** A highest-density set: exact area by sharing the last cell, coverage with that cell whole. */
 export type CredibleRegion = { areaDeg2: number; moc: MocRanges };
+
+/** Long thin rings are covered by somewhat larger cells rather than by more ranges. */
+const MOC_RANGES_MAX = 2000;
 
 /**
  * The smallest set of cells that holds `share` (0 to 1) of a normalised mesh; cells of equal density enter
@@ -32,7 +35,10 @@ export function credibleRegion(cells: MeshCell[], share: number, middle: Vector)
 		held += probability;
 		covered.push(cell);
 	}
-	return { areaDeg2: areaSr * DEG_PER_RAD * DEG_PER_RAD, moc: mocFromCells(covered) };
+	return {
+		areaDeg2: areaSr * DEG_PER_RAD * DEG_PER_RAD,
+		moc: coarsened(mocFromCells(covered), MOC_RANGES_MAX)
+	};
 }
 
 /** Cells surely inside, and the few with density so near the threshold that they must be sorted. */
@@ -40,13 +46,17 @@ function splitAtThreshold(
 	cells: MeshCell[],
 	share: number
 ): { above: MeshCell[]; around: MeshCell[] } {
-	let high = cells.reduce((most, cell) => Math.max(most, cell.density), 0) * (1 + 1e-12);
+	const densities = Float64Array.from(cells, (cell) => cell.density);
+	const probabilities = Float64Array.from(cells, probabilityOf);
+	let high = densities.reduce((most, density) => Math.max(most, density), 0) * (1 + 1e-12);
 	let low = 0;
-	// Bisection on the threshold: 40 passes over the cells cost less than sorting them.
+	// Bisection on the threshold, first by factors of 4: passes over the cells cost less than sorting them.
 	for (let step = 0; step < 40; step++) {
-		const middle = step < 20 && low === 0 ? high / 4 : (low + high) / 2;
+		const middle = low === 0 ? high / 4 : (low + high) / 2;
 		let held = 0;
-		for (const cell of cells) if (cell.density >= middle) held += probabilityOf(cell);
+		for (let i = 0; i < densities.length; i++) {
+			if ((densities[i] ?? 0) >= middle) held += probabilities[i] ?? 0;
+		}
 		if (held > share) low = middle;
 		else high = middle;
 	}

@@ -8,6 +8,7 @@ const MESH_POINTS_MAX = 3000;
 /** At most about 3000 points from normalised mesh cells: neighbours are merged at their common centre of mass. */
 export function meshPoints(cells: MeshCell[], limit = MESH_POINTS_MAX): RegionPoints {
 	let order = cells.reduce((finest, cell) => Math.max(finest, cell.order), 0);
+	while (order > 0 && leastMerged(cells, order) > limit) order -= 1;
 	while (order > 0 && mergedCount(cells, order) > limit) order -= 1;
 	const groups = new Map<number, { x: number; y: number; z: number; p: number }>();
 	for (const cell of cells) {
@@ -30,6 +31,14 @@ export function meshPoints(cells: MeshCell[], limit = MESH_POINTS_MAX): RegionPo
 		points.probability.push(group.p);
 	}
 	return points;
+}
+
+/** A lower bound on `mergedCount` that needs no set: every parent filled by its children. */
+function leastMerged(cells: MeshCell[], order: number): number {
+	return cells.reduce(
+		(sum, cell) => sum + (cell.order <= order ? 1 : 4 ** (order - cell.order)),
+		0
+	);
 }
 
 function mergedCount(cells: MeshCell[], order: number): number {

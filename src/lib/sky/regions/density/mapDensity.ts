@@ -18,11 +18,20 @@ export function mapDensity(shape: MapShape): Density {
 	const map = sortedMap(shape);
 	const { starts, ends, logs, before } = map;
 	const greatest = rangeMaximum(logs);
+	let lastCell: object | null = null;
+	let last = { low: 0, high: 0, from: 0, to: 0 };
+	// Bound, value and side of one cell are asked for in turn: look it up once.
 	const span = (cell: { order: number; pixel: number }) => {
+		if (cell === lastCell) return last;
 		const scale = 4 ** (map.order - cell.order);
 		const low = scale >= 1 ? cell.pixel * scale : Math.floor(cell.pixel * scale);
 		const high = scale >= 1 ? low + scale : low + 1;
-		return { low, high, from: firstAfter(ends, low), to: firstAtLeast(starts, high) };
+		const from = firstAfter(ends, low);
+		const to =
+			scale > 1 ? firstAtLeast(starts, high) : (starts[from] ?? Infinity) < high ? from + 1 : from;
+		lastCell = cell;
+		last = { low, high, from, to };
+		return last;
 	};
 	const logAt: Density['logAt'] = (direction) => {
 		const { from, to } = span({
@@ -63,34 +72,43 @@ function sortedMap({ uniq, density }: MapShape): SortedMap {
 			`map has ${count} uniq and ${density.length} density; it must have equally many, above 0`
 		);
 	}
-	const cells = uniq.map(fromUniq);
-	const order = cells.reduce((finest, cell) => Math.max(finest, cell.order), 0);
-	const startOf = new Float64Array(count);
+	const orders = new Uint8Array(count);
+	const pixels = new Float64Array(count);
+	let order = 0;
+	for (let i = 0; i < count; i++) {
+		const cell = fromUniq(uniq[i] ?? NaN);
+		orders[i] = cell.order;
+		pixels[i] = cell.pixel;
+		if (cell.order > order) order = cell.order;
+	}
+	const index = new Uint32Array(count);
 	let ascending = true;
-	cells.forEach((cell, i) => {
-		startOf[i] = cell.pixel * 4 ** (order - cell.order);
-		if (i > 0 && (startOf[i - 1] ?? 0) >= (startOf[i] ?? 0)) ascending = false;
-	});
-	const index = Array.from(startOf.keys());
-	if (!ascending) index.sort((a, b) => (startOf[a] ?? 0) - (startOf[b] ?? 0));
+	for (let i = 0; i < count; i++) {
+		index[i] = i;
+		pixels[i] = (pixels[i] ?? 0) * 4 ** (order - (orders[i] ?? 0));
+		if (i > 0 && (pixels[i - 1] ?? 0) >= (pixels[i] ?? 0)) ascending = false;
+	}
+	if (!ascending) index.sort((a, b) => (pixels[a] ?? 0) - (pixels[b] ?? 0));
 	const starts = new Float64Array(count);
 	const ends = new Float64Array(count);
 	const logs = new Float64Array(count);
 	const before = new Float64Array(count + 1);
-	index.forEach((from, i) => {
-		const cell = cells[from] ?? { order: 0, pixel: 0 };
+	for (let i = 0; i < count; i++) {
+		const from = index[i] ?? 0;
+		const cellOrder = orders[from] ?? 0;
 		const value = density[from] ?? NaN;
 		if (!(value >= 0 && value < Infinity)) {
 			throw new RangeError(`density[${from}] is ${value}; it must be finite and at least 0`);
 		}
-		starts[i] = startOf[from] ?? 0;
-		ends[i] = (startOf[from] ?? 0) + 4 ** (order - cell.order);
-		if (i > 0 && (ends[i - 1] ?? 0) > (starts[i] ?? 0)) {
+		const start = pixels[from] ?? 0;
+		if (i > 0 && (ends[i - 1] ?? 0) > start) {
 			throw new RangeError(`uniq[${from}] is ${uniq[from]}; it overlaps another cell of the map`);
 		}
+		starts[i] = start;
+		ends[i] = start + 4 ** (order - cellOrder);
 		logs[i] = value;
-		before[i + 1] = (before[i] ?? 0) + value * cellAreaSr(cell.order);
-	});
+		before[i + 1] = (before[i] ?? 0) + value * cellAreaSr(cellOrder);
+	}
 	const total = before[count] ?? 0;
 	if (!(total > 0)) throw new RangeError('density is 0 everywhere; a map must hold probability');
 	for (let i = 0; i < count; i++) logs[i] = Math.log((logs[i] ?? 0) / total);
