@@ -84,7 +84,7 @@ export async function publishCircular(
 			kind: 'circularPublished',
 			at,
 			actorId: actor.id,
-			summary: `published circular ${number}: ${input.title}`,
+			summary: `Published circular ${number}: ${input.title}`,
 			detail: { number, circularId: input.draftId }
 		});
 		change.touch(subject.id);

@@ -1,6 +1,13 @@
+import { deliverCircularJob } from '../circulars/deliverCircularJob';
+import { failForgottenDeliveriesJob } from '../circulars/failForgottenDeliveriesJob';
 import { refreshOutlookJob } from '../outlook/refreshOutlookJob';
 import { refreshOutlooksJob } from '../outlook/refreshOutlooksJob';
 import type { Job } from './queue';
 
 /** Every kind of job. The payload type is each job's own business. */
-export const ALL_JOBS = [refreshOutlookJob, refreshOutlooksJob] as unknown as Job<unknown>[];
+export const ALL_JOBS = [
+	refreshOutlookJob,
+	refreshOutlooksJob,
+	deliverCircularJob,
+	failForgottenDeliveriesJob
+] as unknown as Job<unknown>[];
