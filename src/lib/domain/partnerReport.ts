@@ -8,6 +8,8 @@ const optionalNumber = <Schema extends z.ZodType>(schema: Schema) =>
 /** What a partner saw of a published transient with a telescope of their own. */
 export const partnerReportSchema = z
 	.strictObject({
+		/** Made by the sender when the form was opened: the same id twice is one report. */
+		reportId: z.uuid(),
 		designation: z.string().min(1, 'choose what it is about').max(20),
 		kind: z.enum(['detection', 'limit'], { error: 'must be a detection or an upper limit' }),
 		filter: z.string().trim().min(1, 'name the filter').max(20),
