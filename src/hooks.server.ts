@@ -5,6 +5,7 @@ import { sequence } from '@sveltejs/kit/hooks';
 import { THEMES, type Theme } from '$lib/domain/vocabulary';
 import { answerAuth } from '$lib/server/auth/authentication';
 import { actorOfSession, SESSION_COOKIE } from '$lib/server/auth/session';
+import { compress } from '$lib/server/http/compress';
 import { checkOrigin } from '$lib/server/http/origin';
 import { requestLog } from '$lib/server/http/requestLog';
 import { securityHeaders } from '$lib/server/http/securityHeaders';
@@ -36,7 +37,7 @@ const context: Handle = async ({ event, resolve }) => {
 const signIn: Handle = async ({ event, resolve }) =>
 	(await answerAuth(event.locals.app, event.request)) ?? resolve(event);
 
-export const handle = sequence(context, requestLog, securityHeaders, checkOrigin, signIn);
+export const handle = sequence(context, requestLog, securityHeaders, compress, checkOrigin, signIn);
 
 export const handleError: HandleServerError = ({ error, event, status }) => {
 	const requestId = event.locals.requestId;

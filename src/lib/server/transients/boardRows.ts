@@ -173,6 +173,14 @@ function boardPart(item: {
 	];
 }
 
+/** A hundredth of an arcsecond: a pointing loses nothing, the board's body gets shorter. */
+const TILE_DECIMALS = 6;
+
+function rounded(value: number, decimals: number): number {
+	const scale = 10 ** decimals;
+	return Math.round(value * scale) / scale;
+}
+
 function boardOutlook(
 	body: Outlook,
 	regionVersion: number,
@@ -201,9 +209,16 @@ function boardOutlook(
 					})),
 					whyNot: row.forbidden ? whyNot(row.forbidden) : null,
 					atOpening: row.atOpening,
-					tiles: row.plan.map(({ startMs, ...tile }) => ({
-						...tile,
-						startAt: new Date(startMs).toISOString()
+					tiles: row.plan.map((tile) => ({
+						centre: {
+							raDeg: rounded(tile.centre.raDeg, TILE_DECIMALS),
+							decDeg: rounded(tile.centre.decDeg, TILE_DECIMALS)
+						},
+						rotationDeg: rounded(tile.rotationDeg, 3),
+						startAt: new Date(tile.startMs).toISOString(),
+						exposureS: tile.exposureS,
+						probability: rounded(tile.probability, 5),
+						detectChance: rounded(tile.detectChance, 4)
 					})),
 					strip: row.strip
 				}
