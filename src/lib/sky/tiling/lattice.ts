@@ -3,7 +3,10 @@ import { offset, positionAngleDeg, separationDeg } from '../vector';
 import type { Detector } from '../visibility/telescope';
 
 /** A regular arrangement of fields: the cell of a position, by key, and the cell's centre. */
-export type Lattice = (position: Equatorial) => { key: string; centre: Equatorial };
+export type Lattice = (position: Equatorial) => { key: number; centre: Equatorial };
+
+/** Keys are row × this + column. */
+const KEY_STRIDE = 1 << 22;
 
 /** The rectangle or circle that is repeated: the detector itself, or the box around a mosaic. */
 export type Cell = {
@@ -59,32 +62,51 @@ export function bandLattice(
 	shift: { x: number; y: number }
 ): Lattice {
 	const startDecDeg = Math.max(-89, Math.min(89, middle.decDeg + shift.y * cell.heightDeg));
-	const rows = [bandRow(startDecDeg, cell)];
-	const north = [...growNorth(rows[0]!, cell)];
-	const south = [...growNorth(mirrored(rows[0]!), cell)].map(mirrored);
-	const all = [...south.reverse(), rows[0]!, ...north];
+	const first = bandRow(startDecDeg, cell);
+	// Rows are made as far as positions ask for them.
+	const north = new RowStack(first, cell);
+	const south = new RowStack(mirrored(first), cell);
 	return (position) => {
-		// The first row whose guaranteed band reaches above the position.
-		let low = 0;
-		let high = all.length - 1;
-		while (low < high) {
-			const half = (low + high) >> 1;
-			if (position.decDeg <= all[half]!.topDeg) high = half;
-			else low = half + 1;
-		}
-		const row = all[low]!;
+		const northern = position.decDeg > first.bottomDeg;
+		const index = northern ? north.rowFor(position.decDeg) : south.rowFor(-position.decDeg);
+		const row = (northern ? north : south).rows[index]!;
 		const spacingDeg = 360 / row.columns;
 		const fromMiddleDeg = normaliseDeg(position.raDeg - middle.raDeg);
-		const column = Math.round(fromMiddleDeg / spacingDeg - shift.x) % row.columns;
-		const key = `${low}:${column}`;
+		const column = (Math.round(fromMiddleDeg / spacingDeg - shift.x) + row.columns) % row.columns;
 		return {
-			key,
+			key: (northern ? index : -index) * KEY_STRIDE + column,
 			centre: {
 				raDeg: normaliseDeg(middle.raDeg + (column + shift.x) * spacingDeg),
-				decDeg: row.decDeg
+				decDeg: northern ? row.decDeg : -row.decDeg
 			}
 		};
 	};
+}
+
+/** Rows from the first one northwards, up to the cap around the pole that fits into one field. */
+class RowStack {
+	readonly rows: Row[];
+
+	constructor(
+		first: Row,
+		private readonly cell: { widthDeg: number; heightDeg: number }
+	) {
+		this.rows = [first];
+	}
+
+	/** Index of the first row whose band without holes reaches a declination. */
+	rowFor(decDeg: number): number {
+		while (this.rows.at(-1)!.topDeg < decDeg)
+			this.rows.push(rowAbove(this.rows.at(-1)!, this.cell));
+		let low = 0;
+		let high = this.rows.length - 1;
+		while (low < high) {
+			const half = (low + high) >> 1;
+			if (decDeg <= this.rows[half]!.topDeg) high = half;
+			else low = half + 1;
+		}
+		return low;
+	}
 }
 
 /** One row: its declination, number of fields around the sky and the band it covers without holes. */
@@ -114,31 +136,26 @@ function bandRow(decDeg: number, cell: { widthDeg: number; heightDeg: number }):
 	);
 	const columns = Math.max(4, Math.ceil(Math.PI / narrow - 1e-9));
 	const cosHalf = Math.cos(Math.PI / columns);
-	const edgeDeg = (angleRad: number) => Math.atan(Math.tan(angleRad) * cosHalf) * DEG_PER_RAD;
 	const top = decRad + halfRad;
 	const bottom = decRad - halfRad;
 	return {
 		decDeg,
 		columns,
-		topDeg: Math.min(top * DEG_PER_RAD, edgeDeg(top)),
-		bottomDeg: Math.max(bottom * DEG_PER_RAD, edgeDeg(bottom))
+		topDeg: Math.min(top, Math.atan(Math.tan(top) * cosHalf)) * DEG_PER_RAD,
+		bottomDeg: Math.max(bottom, Math.atan(Math.tan(bottom) * cosHalf)) * DEG_PER_RAD
 	};
 }
 
-/** Rows northwards until the cap around the pole fits into one field. */
-function* growNorth(first: Row, cell: { widthDeg: number; heightDeg: number }): Generator<Row> {
-	const capDeg = Math.min(cell.widthDeg, cell.heightDeg) / 2;
-	let topDeg = first.topDeg;
-	while (topDeg < 90 - capDeg) {
-		let row = bandRow(Math.min(topDeg + cell.heightDeg / 2, 90 - cell.heightDeg / 2 - 1e-6), cell);
-		for (let step = 0; step < 6 && row.bottomDeg > topDeg + 1e-12; step += 1) {
-			row = bandRow(row.decDeg - (row.bottomDeg - topDeg), cell);
-		}
-		if (row.topDeg <= topDeg + 1e-9) break;
-		yield row;
-		topDeg = row.topDeg;
+/** The row above, whose band starts where the one below ends; a single field on the pole once that is enough. */
+function rowAbove(below: Row, cell: { widthDeg: number; heightDeg: number }): Row {
+	const pole = { decDeg: 90, columns: 1, bottomDeg: below.topDeg, topDeg: 90 };
+	const halfDeg = cell.heightDeg / 2;
+	if (below.topDeg >= 90 - Math.min(cell.widthDeg, cell.heightDeg) / 2) return pole;
+	let row = bandRow(Math.min(below.topDeg + halfDeg, 90 - halfDeg - 1e-6), cell);
+	for (let step = 0; step < 6 && row.bottomDeg > below.topDeg + 1e-12; step += 1) {
+		row = bandRow(row.decDeg - (row.bottomDeg - below.topDeg), cell);
 	}
-	yield { decDeg: 90, columns: 1, bottomDeg: topDeg, topDeg: 90 };
+	return row.topDeg > below.topDeg + 1e-9 ? row : pole;
 }
 
 /**
@@ -178,7 +195,7 @@ export function flatLattice(
 		const cellEast = cellX * c + cellY * s;
 		const cellNorth = -cellX * s + cellY * c;
 		return {
-			key: `${best.row}:${best.column}`,
+			key: best.row * KEY_STRIDE + 2 * best.column,
 			centre: offset(
 				middle,
 				Math.hypot(cellEast, cellNorth),

@@ -8,6 +8,7 @@ const COVERED_SHARE = 0.9;
 /** A region's points as unit vectors (ICRS), with the sky area that each stands for. */
 export type RegionSample = {
 	count: number;
+	positions: Equatorial[];
 	x: Float64Array;
 	y: Float64Array;
 	z: Float64Array;
@@ -67,7 +68,8 @@ export function regionSample(points: RegionPoints): RegionSample {
 		length > 1e-6 * total
 			? toEquatorial(sum)
 			: { raDeg: points.raDeg[best]!, decDeg: points.decDeg[best]! };
-	return { count, x, y, z, probability, areaDeg2, byDensity, coreCount, total, middle };
+	const positions = points.raDeg.map((raDeg, i) => ({ raDeg, decDeg: points.decDeg[i]! }));
+	return { count, positions, x, y, z, probability, areaDeg2, byDensity, coreCount, total, middle };
 }
 
 /** Area per point, square degrees: a disc to the sixth nearest point holds six points' areas. */

@@ -1,5 +1,5 @@
-import { DEG_PER_RAD, RAD_PER_DEG, type Equatorial } from '../angle';
-import { deproject, toEquatorial } from '../vector';
+import { RAD_PER_DEG, type Equatorial } from '../angle';
+import { deproject, toVector } from '../vector';
 import type { Detector } from '../visibility/telescope';
 import {
 	fieldAreaDeg2,
@@ -22,6 +22,7 @@ export type RegionTile = Tile & { probability: number; members: Int32Array; part
 /** Positions to be covered: the region's points, split where they stand for more sky than a field. */
 type Samples = {
 	count: number;
+	positions: Equatorial[];
 	x: Float64Array;
 	y: Float64Array;
 	z: Float64Array;
@@ -47,19 +48,34 @@ export function tilesFor(
 	const samples = coveringSamples(region, detectors, cell, maxTiles);
 	const single = singleTile(region, samples, field, detectors);
 	if (single) return [single];
-	let best = arrange(samples, field, detectors, cell, region.middle, { x: 0, y: 0 });
-	if (best.length < 16) {
-		// With few fields it matters whether the middle falls on a field or between fields.
-		for (const shift of [
-			{ x: 0.5, y: 0 },
-			{ x: 0, y: 0.5 },
-			{ x: 0.5, y: 0.5 }
-		]) {
-			const other = arrange(samples, field, detectors, cell, region.middle, shift);
-			if (other.length < best.length) best = other;
-		}
+	const tiles = arrange(samples, field, detectors, cell, bestLattice(samples, cell, region.middle));
+	return tiles.sort((a, b) => b.probability - a.probability).slice(0, maxTiles);
+}
+
+/** The lattice with a field on the middle, unless one shifted by half a field needs fewer for the core. */
+function bestLattice(samples: Samples, cell: Cell, middle: Equatorial): Lattice {
+	let best = latticeFor(cell, middle, { x: 0, y: 0 });
+	let fewest = coreCells(samples, best);
+	// With many fields the gain is small.
+	if (fewest > 16) return best;
+	for (const shift of [
+		{ x: 0.5, y: 0 },
+		{ x: 0, y: 0.5 },
+		{ x: 0.5, y: 0.5 }
+	]) {
+		const lattice = latticeFor(cell, middle, shift);
+		const count = coreCells(samples, lattice);
+		if (count < fewest) [best, fewest] = [lattice, count];
 	}
-	return best.sort((a, b) => b.probability - a.probability).slice(0, maxTiles);
+	return best;
+}
+
+function coreCells(samples: Samples, lattice: Lattice): number {
+	const keys = new Set<number>();
+	for (let i = 0; i < samples.count; i += 1) {
+		if (samples.core[i] === 1) keys.add(lattice(samples.positions[i]!).key);
+	}
+	return keys.size;
 }
 
 /** One field at the region's middle when it holds the 90 % region. */
@@ -83,14 +99,11 @@ function arrange(
 	field: Field,
 	detectors: readonly Detector[],
 	cell: Cell,
-	middle: Equatorial,
-	shift: { x: number; y: number }
+	lattice: Lattice
 ): RegionTile[] {
-	const lattice = latticeFor(cell, middle, shift);
-	const cells = new Map<string, { centre: Equatorial; members: number[]; core: boolean }>();
+	const cells = new Map<number, { centre: Equatorial; members: number[]; core: boolean }>();
 	for (let i = 0; i < samples.count; i += 1) {
-		const position = toEquatorial({ x: samples.x[i]!, y: samples.y[i]!, z: samples.z[i]! });
-		const { key, centre } = lattice(position);
+		const { key, centre } = lattice(samples.positions[i]!);
 		const known = cells.get(key);
 		if (known) {
 			known.members.push(i);
@@ -108,11 +121,10 @@ function arrange(
 	const main = largest(detectors);
 	for (let i = 0; i < samples.count; i += 1) {
 		if (covered[i] === 1 || samples.core[i] === 0) continue;
-		const position = toEquatorial({ x: samples.x[i]!, y: samples.y[i]!, z: samples.z[i]! });
 		const tile = gather(
 			samples,
 			field,
-			{ centre: pointingFor(position, main), rotationDeg: 0 },
+			{ centre: pointingFor(samples.positions[i]!, main), rotationDeg: 0 },
 			covered
 		);
 		if (tile) tiles.push(tile);
@@ -145,7 +157,8 @@ function gather(
 	among?: readonly number[]
 ): RegionTile | null {
 	const axes = tileAxes(tile);
-	const held = new Map<number, number>();
+	const members: number[] = [];
+	const parts: number[] = [];
 	let probability = 0;
 	const count = among ? among.length : samples.count;
 	for (let k = 0; k < count; k += 1) {
@@ -155,14 +168,19 @@ function gather(
 		if (covered) covered[i] = 1;
 		probability += samples.probability[i]!;
 		const parent = samples.parent[i]!;
-		held.set(parent, (held.get(parent) ?? 0) + samples.probability[i]!);
+		// Parts of one point stand side by side.
+		if (members.at(-1) === parent) parts[parts.length - 1]! += samples.probability[i]!;
+		else {
+			members.push(parent);
+			parts.push(samples.probability[i]!);
+		}
 	}
-	if (held.size === 0) return null;
+	if (members.length === 0) return null;
 	return {
 		...tile,
 		probability,
-		members: Int32Array.from(held.keys()),
-		parts: Float64Array.from(held.values())
+		members: Int32Array.from(members),
+		parts: Float64Array.from(parts)
 	};
 }
 
@@ -212,6 +230,7 @@ function coveringSamples(
 	const count = chosen.reduce((sum, { parts }) => sum + parts, 0);
 	const samples: Samples = {
 		count,
+		positions: [],
 		x: new Float64Array(count),
 		y: new Float64Array(count),
 		z: new Float64Array(count),
@@ -221,27 +240,22 @@ function coveringSamples(
 	};
 	let at = 0;
 	chosen.forEach(({ index, parts }, k) => {
-		const point = { x: region.x[index]!, y: region.y[index]!, z: region.z[index]! };
+		const centre = region.positions[index]!;
 		const radiusDeg = Math.sqrt(region.areaDeg2[index]! / Math.PI);
-		const centre = parts > 1 ? toEquatorial(point) : null;
 		for (let part = 0; part < parts; part += 1, at += 1) {
 			const spread = radiusDeg * Math.sqrt((part + 0.5) / parts);
-			const position = centre
-				? deproject(centre, {
-						eastDeg: spread * Math.sin(part * GOLDEN_ANGLE_RAD),
-						northDeg: spread * Math.cos(part * GOLDEN_ANGLE_RAD)
-					})
-				: null;
-			if (position) {
-				const cosDec = Math.cos(position.decDeg / DEG_PER_RAD);
-				samples.x[at] = cosDec * Math.cos(position.raDeg / DEG_PER_RAD);
-				samples.y[at] = cosDec * Math.sin(position.raDeg / DEG_PER_RAD);
-				samples.z[at] = Math.sin(position.decDeg / DEG_PER_RAD);
-			} else {
-				samples.x[at] = point.x;
-				samples.y[at] = point.y;
-				samples.z[at] = point.z;
-			}
+			const position =
+				parts === 1
+					? centre
+					: deproject(centre, {
+							eastDeg: spread * Math.sin(part * GOLDEN_ANGLE_RAD),
+							northDeg: spread * Math.cos(part * GOLDEN_ANGLE_RAD)
+						});
+			const vector = parts === 1 ? null : toVector(position);
+			samples.positions.push(position);
+			samples.x[at] = vector?.x ?? region.x[index]!;
+			samples.y[at] = vector?.y ?? region.y[index]!;
+			samples.z[at] = vector?.z ?? region.z[index]!;
 			samples.probability[at] = region.probability[index]! / parts;
 			samples.parent[at] = index;
 			samples.core[at] = k < region.coreCount ? 1 : 0;

@@ -26,9 +26,12 @@ type Margin = { limit: LimitName; marginDeg: (utcMs: number) => number };
 export function forbiddenBy(telescope: TelescopeNights, target: SkyTarget): Forbidden {
 	const margins = limitMargins(telescope, target);
 	const times = timesBetween(telescope.startMs, telescope.endMs, COARSE_MS);
-	const table = margins.map(({ marginDeg }) => times.map(marginDeg));
-	const alone = margins.findIndex((_, i) => table[i]!.every((margin) => margin <= 0));
-	if (alone >= 0) return closest(margins[alone]!, times, table[alone]!, telescope, () => true);
+	const table: number[][] = [];
+	for (const margin of margins) {
+		const row = times.map(margin.marginDeg);
+		if (row.every((value) => value <= 0)) return closest(margin, times, row, telescope, () => true);
+		table.push(row);
+	}
 	const candidates = margins.flatMap((margin, i) => {
 		const othersKept = times.map((_, t) => table.every((row, j) => j === i || row[t]! > 0));
 		if (!othersKept.includes(true)) return [];

@@ -27,22 +27,31 @@ export function horizonAltDeg(horizon: readonly HorizonPoint[], azDeg: number): 
 export function knotTimesMs(
 	sky: SiteSky,
 	target: SkyTarget,
-	horizon: readonly HorizonPoint[]
+	horizon: readonly HorizonPoint[],
+	startMs: number,
+	endMs: number
 ): number[] {
-	const { span } = sky.shared;
-	const passages = horizon.flatMap((point) => azimuthPassagesMs(sky, target, point.azDeg));
 	const times: number[] = [];
-	for (let utcMs = span.startMs; utcMs < span.endMs; utcMs += STEP_MS) times.push(utcMs);
-	const sorted = times.concat(passages).sort((a, b) => a - b);
-	return sorted.flatMap((utcMs, i) => {
-		const before = sorted[i - 1];
-		return before === undefined ? [utcMs] : [(before + utcMs) / 2, utcMs];
-	});
+	for (const { azDeg } of horizon) addPassages(times, sky, target, azDeg, startMs, endMs);
+	for (let utcMs = startMs; utcMs < endMs; utcMs += STEP_MS) times.push(utcMs);
+	const sorted = Float64Array.from(times).sort();
+	const knots: number[] = [];
+	for (let i = 0; i < sorted.length; i += 1) {
+		if (i > 0) knots.push((sorted[i - 1]! + sorted[i]!) / 2);
+		knots.push(sorted[i]!);
+	}
+	return knots;
 }
 
-/** Times in the span at which the target crosses the vertical plane through an azimuth (either side). */
-function azimuthPassagesMs(sky: SiteSky, target: SkyTarget, azDeg: number): number[] {
-	const { span } = sky.shared;
+/** Adds the times between two instants at which the target crosses the vertical plane of an azimuth (either side). */
+function addPassages(
+	times: number[],
+	sky: SiteSky,
+	target: SkyTarget,
+	azDeg: number,
+	startMs: number,
+	endMs: number
+): void {
 	const { sinLat, cosLat } = sky.frame;
 	const azRad = azDeg * RAD_PER_DEG;
 	// In the plane: sin A (sin δ cos φ − cos δ cos H sin φ) + cos A cos δ sin H = 0, as east is −cos δ sin H.
@@ -50,17 +59,17 @@ function azimuthPassagesMs(sky: SiteSky, target: SkyTarget, azDeg: number): numb
 	const sidePart = -Math.cos(azRad);
 	const amplitude = Math.hypot(meridianPart, sidePart) * target.cosDec;
 	const cosine = (Math.sin(azRad) * target.sinDec * cosLat) / amplitude;
-	if (!(Math.abs(cosine) <= 1)) return [];
+	if (!(Math.abs(cosine) <= 1)) return;
 	const axisRad = Math.atan2(sidePart, meridianPart);
-	const startRad = localSiderealRad(sky, span.startMs) - target.raRad;
+	const startRad = localSiderealRad(sky, startMs) - target.raRad;
 	const halfRad = Math.acos(cosine);
-	return [axisRad - halfRad, axisRad + halfRad].flatMap((hourAngleRad) => {
-		const times: number[] = [];
-		for (let turn = Math.ceil((startRad - hourAngleRad) / FULL_TURN_RAD); ; turn += 1) {
-			const utcMs =
-				span.startMs + (turn * FULL_TURN_RAD + hourAngleRad - startRad) / span.gastRadPerMs;
-			if (utcMs > span.endMs) return times;
+	const rate = sky.shared.span.gastRadPerMs;
+	for (const hourAngleRad of [axisRad - halfRad, axisRad + halfRad]) {
+		let turn = Math.ceil((startRad - hourAngleRad) / FULL_TURN_RAD);
+		for (; ; turn += 1) {
+			const utcMs = startMs + (turn * FULL_TURN_RAD + hourAngleRad - startRad) / rate;
+			if (utcMs > endMs) break;
 			times.push(utcMs);
 		}
-	});
+	}
 }

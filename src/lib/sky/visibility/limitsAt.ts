@@ -20,15 +20,10 @@ export function limitsAt(telescope: TelescopeNights, utcMs: number): LimitTest {
 	const siderealRad = localSiderealRad(sky, utcMs);
 	const [cosTheta, sinTheta] = [Math.cos(siderealRad), Math.sin(siderealRad)];
 	const observer = observerKm(sky.frame, siderealRad);
-	const seen = (body: Vector): Vector => {
-		const [x, y, z] = [body.x - observer.x, body.y - observer.y, body.z - observer.z];
-		const length = Math.hypot(x, y, z);
-		return { x: x / length, y: y / length, z: z / length };
-	};
-	const sun = seen(evaluateSeries(sky.shared.span.sun, utcMs));
+	const sun = seenFrom(observer, evaluateSeries(sky.shared.span.sun, utcMs));
 	const sunCosine = limits.sunDistanceDeg > 0 ? Math.cos(limits.sunDistanceDeg * RAD_PER_DEG) : 2;
 	const moonOn = moonRule === 'plain' || moonAltitudeDeg(sky, utcMs) > 0;
-	const moon = seen(evaluateSeries(sky.shared.span.moon, utcMs));
+	const moon = seenFrom(observer, evaluateSeries(sky.shared.span.moon, utcMs));
 	const moonCosine =
 		moonOn && limits.moonDistanceDeg > 0
 			? Math.cos(moonLimitDeg(telescope, utcMs) * RAD_PER_DEG)
@@ -56,4 +51,13 @@ export function limitsAt(telescope: TelescopeNights, utcMs: number): LimitTest {
 		const altDeg = Math.asin(Math.min(1, up)) * DEG_PER_RAD;
 		return altDeg > horizonAltDeg(horizon, Math.atan2(east, north) * DEG_PER_RAD);
 	};
+}
+
+/** Unit vector from the observer to a body. */
+function seenFrom(observer: Vector, body: Vector): Vector {
+	const x = body.x - observer.x;
+	const y = body.y - observer.y;
+	const z = body.z - observer.z;
+	const length = Math.sqrt(x * x + y * y + z * z);
+	return { x: x / length, y: y / length, z: z / length };
 }

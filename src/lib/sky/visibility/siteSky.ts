@@ -10,7 +10,7 @@ import { evaluateSeries } from '../ephemeris/chebyshev';
 import { siteFrame, toHorizontal, type SiteFrame } from '../ephemeris/siteFrame';
 import { skySpan, targetPlace, type SkySpan, type TargetPlace } from '../ephemeris/skySpan';
 import { illuminatedFraction, moonPhaseAngleDeg } from '../ephemeris/sunMoon';
-import { dot, norm, type Vector } from '../vector';
+import type { Vector } from '../vector';
 
 const STEP_MS = 600_000;
 /** Most that the Moon's place can differ between a site and the Earth's centre, and move within half an hour. */
@@ -47,21 +47,24 @@ export type SkyTarget = TargetPlace & { leastSunDeg: number; leastMoonDeg: numbe
 /** Prepares a position once for all sites. */
 export function skyTarget(position: Equatorial, sky: SharedSky): SkyTarget {
 	const place = targetPlace(position, sky.span);
-	// Every third sample: 30 minutes.
-	const least = (bodies: Vector[]) => {
-		let largest = -1;
-		for (let i = 0; i < bodies.length + 2; i += 3) {
-			const body = bodies[Math.min(i, bodies.length - 1)]!;
-			const cosine = dot(place.direction, body) / norm(body);
-			if (cosine > largest) largest = cosine;
-		}
-		return Math.acos(Math.min(1, largest)) * DEG_PER_RAD;
-	};
 	return {
 		...place,
-		leastSunDeg: least(sky.sun) - 0.05,
-		leastMoonDeg: least(sky.moon) - MOON_ALLOWANCE_DEG
+		leastSunDeg: leastDistanceDeg(place.direction, sky.sun) - 0.05,
+		leastMoonDeg: leastDistanceDeg(place.direction, sky.moon) - MOON_ALLOWANCE_DEG
 	};
+}
+
+/** Least of every third sample (30 minutes), geocentric. */
+function leastDistanceDeg({ x, y, z }: Vector, bodies: Vector[]): number {
+	let largest = -1;
+	for (let i = 0; i < bodies.length + 2; i += 3) {
+		const body = bodies[Math.min(i, bodies.length - 1)]!;
+		const cosine =
+			(x * body.x + y * body.y + z * body.z) /
+			Math.sqrt(body.x * body.x + body.y * body.y + body.z * body.z);
+		if (cosine > largest) largest = cosine;
+	}
+	return Math.acos(Math.min(1, largest)) * DEG_PER_RAD;
 }
 
 /** The sky over one site: Sun and Moon altitude at the shared times, topocentric, degrees, no refraction. */
@@ -83,11 +86,11 @@ export function siteSky(site: Site, shared: SharedSky): SiteSky {
 		sunAltDeg: new Float64Array(shared.timesMs.length),
 		moonAltDeg: new Float64Array(shared.timesMs.length)
 	};
-	shared.timesMs.forEach((utcMs, i) => {
-		const siderealRad = localSiderealRad(sky, utcMs);
+	for (let i = 0; i < shared.timesMs.length; i += 1) {
+		const siderealRad = localSiderealRad(sky, shared.timesMs[i]!);
 		sky.sunAltDeg[i] = bodyAltitudeDeg(shared.sun[i]!, frame, siderealRad);
 		sky.moonAltDeg[i] = bodyAltitudeDeg(shared.moon[i]!, frame, siderealRad);
-	});
+	}
 	return sky;
 }
 
@@ -148,11 +151,12 @@ export function moonPhase(sky: SharedSky, utcMs: number): { angleDeg: number; fr
 }
 
 function bodyAltitudeDeg(body: Vector, frame: SiteFrame, siderealRad: number): number {
-	const x = body.x - frame.axisKm * Math.cos(siderealRad);
-	const y = body.y - frame.axisKm * Math.sin(siderealRad);
+	const cosTheta = Math.cos(siderealRad);
+	const sinTheta = Math.sin(siderealRad);
+	const x = body.x - frame.axisKm * cosTheta;
+	const y = body.y - frame.axisKm * sinTheta;
 	const z = body.z - frame.equatorKm;
-	const up =
-		frame.cosLat * (x * Math.cos(siderealRad) + y * Math.sin(siderealRad)) + frame.sinLat * z;
+	const up = frame.cosLat * (x * cosTheta + y * sinTheta) + frame.sinLat * z;
 	return Math.asin(up / Math.sqrt(x * x + y * y + z * z)) / RAD_PER_DEG;
 }
 

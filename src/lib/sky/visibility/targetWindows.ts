@@ -121,7 +121,13 @@ export function targetWindows(telescope: TelescopeNights, target: SkyTarget): Wi
 	if (windows.length > 0) windows = cutByMoon(telescope, target, windows);
 	const { horizon } = limits;
 	if (horizon !== null && horizon.length > 0 && windows.length > 0) {
-		const knots = knotTimesMs(telescope.sky, target, horizon);
+		const knots = knotTimesMs(
+			telescope.sky,
+			target,
+			horizon,
+			windows[0]!.startMs,
+			windows.at(-1)!.endMs
+		);
 		windows = windowsWhere(
 			windows,
 			(utcMs) => {

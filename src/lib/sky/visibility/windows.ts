@@ -138,7 +138,12 @@ function withExtrema(
 ): { times: ArrayLike<number>; values: ArrayLike<number> } {
 	const found: { utcMs: number; margin: number }[] = [];
 	for (let i = 1; i < timesMs.length - 1; i += 1) {
-		const [before, here, after] = [margins[i - 1]!, margins[i]!, margins[i + 1]!];
+		const before = margins[i - 1]!;
+		const here = margins[i]!;
+		const after = margins[i + 1]!;
+		// Far from 0 against its own change, as almost everywhere.
+		const change = Math.abs(before - here) + Math.abs(after - here);
+		if (Math.abs(here) > 1.5 * change) continue;
 		const sign = here > 0 ? 1 : -1;
 		if (before > 0 !== here > 0 || after > 0 !== here > 0) continue;
 		const reach = parabolaLowest(
