@@ -104,14 +104,16 @@ run_demo() {
 	ensure_npm_packages
 	start_postgres
 	export_environment
+	start_fakes
 	printf 'ORIGIN=%s\nPG_PORT=%s\n' "$ORIGIN" "$PG_PORT" >"$RUN_DIR/place"
 	migrate_and_seed
-	start_fakes
 	if [[ $mode == watch ]]; then
+		await_fakes
 		start_watching
 	else
 		ensure_build
 		install_build
+		await_fakes
 		start_application
 	fi
 	print_welcome

@@ -53,15 +53,23 @@ require_free_ports() {
 	require_free_port "$PUSH_PAGE_PORT" "the push service's page" DUSKLINE_PUSH_PAGE_PORT
 }
 
+# Both leave a mark beside the data they belong to, so that a later start need not ask again.
 migrate_and_seed() {
-	local log=$LOG_DIR/database.log
-	: >"$log"
-	run_step migrate "$log" node --import tsx src/lib/server/db/migrate.ts || {
-		show_log "$log"
-		die "The migrations failed; the last lines are above. '$SELF reset' starts with an empty database."
-	}
-	run_step seed - node --import tsx src/lib/server/demo/seed.ts ||
-		die "The demo data could not be made. '$SELF reset' starts with an empty database."
+	local log=$LOG_DIR/database.log migrations
+	migrations=$(find drizzle -type f -print0 | LC_ALL=C sort -z | xargs -0 sha256sum | sha256sum)
+	if [[ $(cat "$PG_HOME/migrated" 2>/dev/null) != "$migrations" ]]; then
+		: >"$log"
+		run_step migrate "$log" node --import tsx src/lib/server/db/migrate.ts || {
+			show_log "$log"
+			die "The migrations failed; the last lines are above. '$SELF reset' starts with an empty database."
+		}
+		printf '%s' "$migrations" >"$PG_HOME/migrated"
+	fi
+	if [[ ! -f $PG_HOME/seeded || ! -s $DUSKLINE_DEMO_KEYS_FILE ]]; then
+		run_step seed - node --import tsx src/lib/server/demo/seed.ts ||
+			die "The demo data could not be made. '$SELF reset' starts with an empty database."
+		touch "$PG_HOME/seeded"
+	fi
 }
 
 start_fakes() {
@@ -69,6 +77,9 @@ start_fakes() {
 	: >"$LOG_DIR/push.log"
 	spawn push "$LOG_DIR/push.log" node --import tsx fakes/pushService.ts
 	spawn mailbox "$LOG_DIR/mailbox.log" node --import tsx fakes/mailbox.ts
+}
+
+await_fakes() {
 	wait_until_answers mailbox "$MAILBOX_PORT" / 30 "$LOG_DIR/mailbox.log"
 	wait_until_answers push "$PUSH_PAGE_PORT" / 30 "$LOG_DIR/push.log"
 }

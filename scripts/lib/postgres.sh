@@ -116,6 +116,7 @@ start_postgres() {
 		sleep 0.1
 	done
 	if [[ $(run_psql -qtA -c "select 1 from pg_database where datname = 'duskline'" postgres) != 1 ]]; then
+		rm -f "$PG_HOME/migrated" "$PG_HOME/seeded"
 		run_psql -q -c 'create database duskline' postgres
 	fi
 }
