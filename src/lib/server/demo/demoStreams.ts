@@ -8,7 +8,7 @@ export const DEMO_STREAM_CODES = ['tambour', 'carapace', 'needle'] as const;
 export type DemoStreamCode = (typeof DEMO_STREAM_CODES)[number];
 
 /** Mean and spread from Akerlof & Swan 2007 (arXiv:0709.0962); kept wide because a later sample is fainter. */
-const FADE: FadeModel = { m1Mean: 22.2, m1Spread: 2.3, alpha: 1 };
+export const DEMO_FADE: FadeModel = { m1Mean: 22.2, m1Spread: 2.3, alpha: 1 };
 
 type DemoStream = {
 	code: DemoStreamCode;
@@ -62,7 +62,7 @@ export async function seedStreams(
 ): Promise<Map<DemoStreamCode, string>> {
 	const rows = await tx
 		.insert(stream)
-		.values(DEMO_STREAMS.map((one) => ({ ...one, fade: FADE, createdAt })))
+		.values(DEMO_STREAMS.map((one) => ({ ...one, fade: DEMO_FADE, createdAt })))
 		.returning({ id: stream.id, code: stream.code });
 	return new Map(rows.map(({ id, code }) => [code as DemoStreamCode, id]));
 }

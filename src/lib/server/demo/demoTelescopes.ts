@@ -1,6 +1,6 @@
 import type { Depth, Detector, TelescopeLimits } from '../../sky/visibility/telescope';
 import type { Transaction } from '../db/database';
-import { telescope, telescopeObserver } from '../db/schema/network';
+import { closure, telescope, telescopeObserver } from '../db/schema/network';
 import type { SeededPeople } from './demoPeople';
 
 export type DemoTelescope = {
@@ -169,4 +169,31 @@ export async function seedTelescopes(
 			)
 		);
 	return ids;
+}
+
+const HOUR_MS = 3_600_000;
+
+/** One telescope closed now and one to be closed in some days, entered by people who work there. */
+export async function seedClosures(
+	tx: Transaction,
+	people: SeededPeople,
+	ids: Map<string, string>,
+	nowMs: number
+): Promise<void> {
+	const closed = [
+		{ code: 'SHK', by: 'BF', fromH: -3, toH: 20, reason: 'Dust storm' },
+		{ code: 'RDV', by: 'BA', fromH: 76, toH: 148, reason: 'Mirror aluminising' }
+	];
+	await tx.insert(closure).values(
+		closed.map(({ code, by, fromH, toH, reason }) => ({
+			telescopeId: ids.get(code)!,
+			during: {
+				start: new Date(nowMs + fromH * HOUR_MS),
+				end: new Date(nowMs + toH * HOUR_MS)
+			},
+			reason,
+			enteredBy: people.get(by)!.id,
+			enteredAt: new Date(nowMs - 4 * HOUR_MS)
+		}))
+	);
 }
