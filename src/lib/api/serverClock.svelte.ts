@@ -17,6 +17,11 @@ class ServerClock {
 		return Date.now() + this.#offsetMs;
 	}
 
+	/** An instant of the browser's clock on the server's. */
+	fromBrowser(browserMs: number): number {
+		return browserMs + this.#offsetMs;
+	}
+
 	/** Sets the clock by an answer of the server. Differences below 1.5 s are the network's. */
 	sync(serverNow: string): void {
 		if (typeof window === 'undefined') return;

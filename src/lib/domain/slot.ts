@@ -1,6 +1,9 @@
 import { z } from 'zod';
 import { instantSchema } from './alertPacket';
-import { REPORT_KINDS, type SlotState } from './vocabulary';
+import { REPORT_KINDS } from './vocabulary';
+
+// Apart, so that a screen that needs the states does not carry the schemas' library.
+export { SLOT_TRANSITIONS, slotMayBecome } from './slotStates';
 
 /** Body of `POST /api/v1/slots`: claims a telescope for a transient. */
 export const claimSchema = z
@@ -20,20 +23,6 @@ export const claimSchema = z
 		error: 'must be within 14 hours of the start'
 	});
 export type Claim = z.output<typeof claimSchema>;
-
-/** Which states may follow which. */
-export const SLOT_TRANSITIONS: Record<SlotState, readonly SlotState[]> = {
-	offered: ['claimed', 'lapsed'],
-	claimed: ['on sky', 'reported', 'released', 'lapsed'],
-	'on sky': ['reported', 'released'],
-	reported: [],
-	released: [],
-	lapsed: []
-};
-
-export function slotMayBecome(from: SlotState, to: SlotState): boolean {
-	return SLOT_TRANSITIONS[from].includes(to);
-}
 
 const magnitude = z.number().min(-5).max(35);
 
