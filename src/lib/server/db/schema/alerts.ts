@@ -78,6 +78,22 @@ export const packet = pgTable(
 	(table) => [index('packet_stream_received').on(table.streamId, table.receivedAt)]
 );
 
+/** A packet that an authenticated stream sent and that was refused: for the stream's error rate. */
+export const packetRefusal = pgTable(
+	'packet_refusal',
+	{
+		id: bigserial('id', { mode: 'number' }).primaryKey(),
+		streamId: uuid('stream_id')
+			.notNull()
+			.references(() => stream.id, { onDelete: 'cascade' }),
+		at: instant('at').notNull(),
+		/** The refusal's code, as in the problem document. */
+		code: text('code').notNull(),
+		detail: text('detail').notNull()
+	},
+	(table) => [index('packet_refusal_stream_at').on(table.streamId, table.at)]
+);
+
 export type Citation = { stream: string; packetId: string; relation: CitationRelation };
 
 /** One machine message from a stream. */

@@ -1,0 +1,85 @@
+import { z } from 'zod';
+import { STREAM_CLASSES, type StreamClass } from './vocabulary';
+
+const text = (most: number, what: string) =>
+	z.string().trim().min(1, `${what} is needed.`).max(most, `At most ${most} characters.`);
+
+/** A number typed into a form; an empty box is refused by its own sentence. */
+export function formNumber(low: number, high: number, unit = ''): z.ZodType<number> {
+	const range = `Must be a number from ${low} to ${high}${unit ? ` ${unit}` : ''}.`;
+	return z
+		.union([z.number(), z.string().trim().min(1, 'A number is needed.').transform(Number)], {
+			error: 'A number is needed.'
+		})
+		.pipe(z.number(range).min(low, range).max(high, range));
+}
+
+const STREAM_FIELDS = {
+	name: text(60, 'A name'),
+	streamClass: z.enum(STREAM_CLASSES, 'Choose a kind of instrument.'),
+	defaultContainment: formNumber(0.01, 0.999),
+	defaultSystematicDeg: formNumber(0, 30, 'degrees'),
+	alertsPerYear: formNumber(0.1, 100_000, 'a year'),
+	coincidenceWindowS: formNumber(1, 604_800, 'seconds'),
+	silentAfterMinutes: formNumber(1, 525_600, 'minutes').pipe(
+		z.number().int('Whole minutes only.')
+	),
+	fadeM1Mean: formNumber(5, 40, 'mag'),
+	fadeM1Spread: formNumber(0.1, 10, 'mag'),
+	fadeAlpha: formNumber(0, 5)
+};
+
+/** A changed stream. Its code stays: packets cite by it. */
+export const streamEditSchema = z.object(STREAM_FIELDS);
+export type StreamEdit = z.output<typeof streamEditSchema>;
+
+/** A new stream. */
+export const streamCreateSchema = z.object({
+	code: z
+		.string()
+		.trim()
+		.regex(
+			/^[a-z][a-z0-9-]{1,30}$/,
+			'2 to 31 lower-case letters, digits or hyphens, a letter first.'
+		),
+	...STREAM_FIELDS
+});
+export type StreamCreate = z.output<typeof streamCreateSchema>;
+
+export const streamKeyCreateSchema = z.object({
+	label: text(60, 'A name for the key')
+});
+
+export const streamKeyRevokeSchema = z.object({ keyId: z.uuid('There is no such key.') });
+
+/** What the streams page shows; instants are ISO 8601 UTC strings. */
+export type StreamOverview = {
+	code: string;
+	name: string;
+	streamClass: StreamClass;
+	lastHeardAt: string | null;
+	/** Nothing heard for longer than the stream is expected to be silent. */
+	silent: boolean;
+	retired: boolean;
+	/** Packets taken in, and refused, in the last 24 h. */
+	packets24h: number;
+	refused24h: number;
+	liveKeys: number;
+};
+
+export type StreamKeyView = {
+	id: string;
+	label: string;
+	prefix: string;
+	createdAt: string;
+	createdBy: string | null;
+	lastUsedAt: string | null;
+	revokedAt: string | null;
+};
+
+export type StreamDetail = StreamOverview & {
+	settings: StreamEdit;
+	keys: StreamKeyView[];
+	/** The latest refusals, newest first. */
+	refusals: { at: string; code: string; detail: string }[];
+};
