@@ -5,6 +5,7 @@ import { liveParts } from '../alerts/alertStore';
 import { logOddsOfAgreement } from '../alerts/association';
 import type { Transaction } from '../db/database';
 import { region, transient } from '../db/schema/transients';
+import { alert } from '../db/schema/alerts';
 import { slot } from '../db/schema/slots';
 import type { Change } from '../db/writeTransaction';
 import { requestOutlook } from '../outlook/outlookRequests';
@@ -12,7 +13,7 @@ import { writeJournal } from './journalStore';
 
 /**
  * Makes the joint region anew from a transient's live alerts, as its next version, and asks for the
- * outlook. Without live alerts the transient is closed as retracted, its offers lapse.
+ * outlook. Without live alerts the transient is closed and its offers lapse.
  */
 export async function deriveRegion(
 	app: App,
@@ -24,7 +25,7 @@ export async function deriveRegion(
 	change.touch(transientId);
 	const parts = await liveParts(tx, transientId);
 	const first = parts[0];
-	if (!first) return closeAsRetracted(app, tx, transientId);
+	if (!first) return closeWithoutAlerts(app, tx, transientId);
 
 	const shapes = parts.map((part) => part.shape);
 	// Circles have a closed form; anything else is meshed in a compute thread.
@@ -93,18 +94,24 @@ export function formatArea(areaDeg2: number): string {
 	return `${Number((arcmin2 * 3600).toPrecision(3))} arcsec²`;
 }
 
-async function closeAsRetracted(app: App, tx: Transaction, transientId: string): Promise<void> {
+async function closeWithoutAlerts(app: App, tx: Transaction, transientId: string): Promise<void> {
 	const now = app.now();
-	await tx.update(transient).set({ state: 'retracted' }).where(eq(transient.id, transientId));
+	const retracted = (await tx.$count(alert, eq(alert.transientId, transientId))) > 0;
+	await tx
+		.update(transient)
+		.set({ state: retracted ? 'retracted' : 'closed' })
+		.where(eq(transient.id, transientId));
 	await tx
 		.update(slot)
 		.set({ state: 'lapsed', endedAt: now })
 		.where(and(eq(slot.transientId, transientId), eq(slot.state, 'offered')));
 	await writeJournal(tx, {
 		transientId,
-		kind: 'retracted',
+		kind: retracted ? 'retracted' : 'closed',
 		at: now,
 		actorId: null,
-		summary: 'Closed as retracted: no live alert is left'
+		summary: retracted
+			? 'Closed as retracted: no live alert is left'
+			: 'Closed: its alerts belong to other transients'
 	});
 }
