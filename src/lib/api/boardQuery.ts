@@ -45,7 +45,10 @@ export function boardQuery(
 		queryKey: queryKeys.board,
 		queryFn: ({ signal }) => fetchBoard(client.getQueryData<Board>(queryKeys.board), signal),
 		initialData,
-		refetchInterval: () => (document.hidden ? Math.max(HIDDEN_POLL_MS, pollMs) : pollMs),
+		refetchInterval: () =>
+			typeof document !== 'undefined' && document.hidden
+				? Math.max(HIDDEN_POLL_MS, pollMs)
+				: pollMs,
 		refetchIntervalInBackground: true,
 		refetchOnWindowFocus: true,
 		staleTime: 0

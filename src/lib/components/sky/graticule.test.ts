@@ -28,7 +28,7 @@ describe('fitChart', () => {
 		const points = circleOutline({ raDeg, decDeg }, radiusDeg).map(
 			(point) => view.projection([point.raDeg, point.decDeg]) ?? [NaN, NaN]
 		);
-		const tops = points.map(([, y]) => y);
+		const tops = points.map(([, y]) => y ?? NaN);
 		expect(Math.min(...tops)).toBeGreaterThan(0);
 		expect(Math.max(...tops)).toBeLessThan(230);
 		// As large as the height allows: 84 % of it. The arcsecond case shows that digits suffice.
