@@ -1,6 +1,7 @@
 import type PgBoss from 'pg-boss';
 import type { App } from './app';
 import { config } from './config';
+import { followRevisions } from './db/boardRevisions';
 import { connectDatabase } from './db/database';
 import { migrateDatabase } from './db/migrate';
 import { bossQueue, createBoss } from './jobs/queue';
@@ -31,12 +32,14 @@ export async function startRuntime(): Promise<Runtime> {
 		compute,
 		now: () => new Date()
 	};
+	const stopFollowing = settings.role === 'worker' ? async () => {} : await followRevisions(app);
 	const stopWorkers = settings.role === 'web' ? async () => {} : await runWorkers(app, boss);
 	logger.info({ role: settings.role, origin: settings.origin }, 'duskline started');
 	return {
 		app,
 		stop: async () => {
 			await stopWorkers();
+			await stopFollowing();
 			await stopBoss(boss);
 			closeMailers();
 			await compute.close();

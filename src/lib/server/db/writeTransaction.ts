@@ -1,10 +1,8 @@
 import { eq, sql } from 'drizzle-orm';
 import type { App } from '../app';
+import { BOARD_CHANNEL, noteRevision } from './boardRevisions';
 import { databaseErrorOf, type Transaction } from './database';
 import { boardRevision, transient } from './schema/transients';
-
-/** Channel on which web processes hear that the board changed; the payload is the new revision. */
-export const BOARD_CHANNEL = 'duskline_board';
 
 /** Collects what a transaction changed, so that the board's revision moves once, at its end. */
 export type Change = {
@@ -28,16 +26,19 @@ export async function writeTransaction<T>(
 ): Promise<T> {
 	for (let tries = 1; ; tries++) {
 		try {
-			return await app.database.transaction(async (tx) => {
+			let revision: number | null = null;
+			const outcome = await app.database.transaction(async (tx) => {
 				const touched = new Set<string>();
 				let network = false;
 				const result = await body(tx, {
 					touch: (id) => void touched.add(id),
 					touchNetwork: () => void (network = true)
 				});
-				if (touched.size > 0 || network) await moveRevision(tx, touched);
+				if (touched.size > 0 || network) revision = await moveRevision(tx, touched);
 				return result;
 			});
+			if (revision !== null) noteRevision(app.database, revision);
+			return outcome;
 		} catch (error) {
 			const code = databaseErrorOf(error)?.code ?? '';
 			if (tries >= MOST_TRIES || !RETRIED.has(code)) throw error;
@@ -45,7 +46,7 @@ export async function writeTransaction<T>(
 	}
 }
 
-async function moveRevision(tx: Transaction, touched: Set<string>): Promise<void> {
+async function moveRevision(tx: Transaction, touched: Set<string>): Promise<number> {
 	const [row] = await tx
 		.update(boardRevision)
 		.set({ value: sql`${boardRevision.value} + 1` })
@@ -55,4 +56,5 @@ async function moveRevision(tx: Transaction, touched: Set<string>): Promise<void
 		await tx.update(transient).set({ revision }).where(eq(transient.id, id));
 	}
 	await tx.execute(sql`select pg_notify(${BOARD_CHANNEL}, ${String(revision)})`);
+	return revision;
 }

@@ -7,6 +7,7 @@ import { closure } from '../db/schema/network';
 import { boardRevision, transient } from '../db/schema/transients';
 import { telescopeSpecs } from '../outlook/telescopeSpecs';
 import { currentWatch } from '../rota/rotaService';
+import { currentRevision } from '../db/boardRevisions';
 import { boardTransients } from './boardRows';
 
 /**
@@ -35,12 +36,6 @@ async function wholeBoard(app: App): Promise<Board> {
 		board.catch(() => cache.delete(app.database));
 	}
 	return { ...(await entry.board), serverNow: app.now().toISOString() };
-}
-
-/** The number of the last change to anything the board shows. */
-export async function currentRevision(app: Pick<App, 'database'>): Promise<number> {
-	const [row] = await app.database.select({ value: boardRevision.value }).from(boardRevision);
-	return row!.value;
 }
 
 async function makeBoard(app: App): Promise<Board> {

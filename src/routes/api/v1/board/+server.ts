@@ -1,4 +1,5 @@
-import { boardFor, currentRevision } from '$lib/server/transients/board';
+import { boardFor } from '$lib/server/transients/board';
+import { currentRevision } from '$lib/server/db/boardRevisions';
 import { requirePermission } from '$lib/server/actor';
 import { answer } from '$lib/server/http/api';
 import { json } from '@sveltejs/kit';
