@@ -21,9 +21,7 @@ const STREAM_FIELDS = {
 	defaultSystematicDeg: formNumber(0, 30, 'degrees'),
 	alertsPerYear: formNumber(0.1, 100_000, 'a year'),
 	coincidenceWindowS: formNumber(1, 604_800, 'seconds'),
-	silentAfterMinutes: formNumber(1, 525_600, 'minutes').pipe(
-		z.number().int('Whole minutes only.')
-	),
+	silentAfterMinutes: formNumber(1, 525_600, 'minutes').pipe(z.number().int('Whole minutes only.')),
 	fadeM1Mean: formNumber(5, 40, 'mag'),
 	fadeM1Spread: formNumber(0.1, 10, 'mag'),
 	fadeAlpha: formNumber(0, 5)
