@@ -26,8 +26,7 @@ check_machine() {
 postgres_bin() {
 	local wanted=${1:-} directory version best=''
 	if [[ -n ${DUSKLINE_PG_BIN:-} ]]; then
-		[[ -x $DUSKLINE_PG_BIN/initdb ]] || die "DUSKLINE_PG_BIN is $DUSKLINE_PG_BIN, but there is no initdb in it."
-		printf '%s' "$DUSKLINE_PG_BIN"
+		[[ -x $DUSKLINE_PG_BIN/initdb ]] && printf '%s' "$DUSKLINE_PG_BIN"
 		return
 	fi
 	for directory in /usr/lib/postgresql/*/bin; do
@@ -46,6 +45,8 @@ postgres_bin() {
 # shellcheck disable=SC2119
 ensure_postgres() {
 	[[ -n $(postgres_bin) ]] && return
+	[[ -z ${DUSKLINE_PG_BIN:-} ]] || die "DUSKLINE_PG_BIN is $DUSKLINE_PG_BIN, but there is no initdb in it."
+	require_install_rights postgresql-15
 	say 'Installing PostgreSQL from Debian (about a minute)'
 	# Debian's package makes and starts a system cluster of its own unless told otherwise; none is wanted here.
 	local dropin=/etc/postgresql-common/createcluster.d/duskline.conf
@@ -65,6 +66,7 @@ chromium_path() { printf '%s' "${DUSKLINE_CHROMIUM:-/usr/bin/chromium}"; }
 ensure_chromium() {
 	[[ -x $(chromium_path) ]] && return
 	[[ -z ${DUSKLINE_CHROMIUM:-} ]] || die "DUSKLINE_CHROMIUM is $DUSKLINE_CHROMIUM, which can't be run."
+	require_install_rights chromium
 	say 'Installing Chromium from Debian for the browser tests (about a minute)'
 	apt_install chromium || {
 		show_log "$LOG_DIR/apt.log"
@@ -77,13 +79,16 @@ as_root() {
 	if ((EUID == 0)); then "$@"; else sudo "$@"; fi
 }
 
-apt_install() {
+# require_install_rights PACKAGE: ends with the way out when this user or machine can't install it.
+require_install_rights() {
 	command -v apt-get >/dev/null ||
-		die "$* is missing and this machine has no apt-get: install it with the machine's own tool, then start again."
-	if ((EUID != 0)); then
-		command -v sudo >/dev/null && { [[ -t 0 ]] || sudo -n true 2>/dev/null; } ||
-			die "$* is missing and this user may not install it: run 'apt-get install $*' as root, then start again."
-	fi
+		die "$1 is missing and this machine has no apt-get: install it with the machine's own tool, then start again."
+	((EUID != 0)) || return 0
+	command -v sudo >/dev/null && { [[ -t 0 ]] || sudo -n true 2>/dev/null; } ||
+		die "$1 is missing and this user may not install it: run 'apt-get install $1' as root, then start again."
+}
+
+apt_install() {
 	local -a options=(-y -q --no-install-recommends -o DPkg::Lock::Timeout=180)
 	{
 		as_root env DEBIAN_FRONTEND=noninteractive apt-get update -q
