@@ -2,6 +2,7 @@ import { deliverCircularJob } from '../circulars/deliverCircularJob';
 import { failForgottenDeliveriesJob } from '../circulars/failForgottenDeliveriesJob';
 import { refreshOutlookJob } from '../outlook/refreshOutlookJob';
 import { refreshOutlooksJob } from '../outlook/refreshOutlooksJob';
+import { sendInvitationJob } from '../people/sendInvitationJob';
 import type { Job } from './queue';
 
 /** Every kind of job. The payload type is each job's own business. */
@@ -9,5 +10,6 @@ export const ALL_JOBS = [
 	refreshOutlookJob,
 	refreshOutlooksJob,
 	deliverCircularJob,
-	failForgottenDeliveriesJob
+	failForgottenDeliveriesJob,
+	sendInvitationJob
 ] as unknown as Job<unknown>[];
