@@ -20,13 +20,13 @@ export function chartGrid(view: ChartView): Grid {
 	const field = fieldOf(view);
 	if (!field) return { lines: [], raLabels: [], decLabels: [] };
 	const { middle, radiusDeg } = field;
-	const decStepDeg = stepFor(DEC_STEPS_ARCSEC, (radiusDeg * 3600) / 2.2) / 3600;
+	const decStepDeg = stepFor(DEC_STEPS_ARCSEC, (radiusDeg * 3600) / 3.4) / 3600;
 	const cosDec = Math.max(0.02, Math.cos((middle.decDeg * Math.PI) / 180));
 	const southDeg = Math.max(-90, middle.decDeg - radiusDeg);
 	const northDeg = Math.min(90, middle.decDeg + radiusDeg);
 	const polar = middle.decDeg + radiusDeg >= 89.9 || middle.decDeg - radiusDeg <= -89.9;
 	// Around a pole every hour circle meets in the picture: twelve of them are enough.
-	const raStepDeg = polar ? 30 : stepFor(RA_STEPS_S, (radiusDeg * 240) / cosDec / 2.2) / 240;
+	const raStepDeg = polar ? 30 : stepFor(RA_STEPS_S, (radiusDeg * 240) / cosDec / 3) / 240;
 	const halfRaDeg = polar
 		? 180
 		: Math.min(
@@ -98,7 +98,7 @@ function edgeLabels(
 		before = here;
 	}
 	// Away from the corners, where the two rows of labels and the scale bar meet.
-	const [low, high] = edge === 'lower' ? [64, length - 28] : [12, length - 26];
+	const [low, high] = edge === 'lower' ? [52, length - 58] : [48, length - 22];
 	const kept: { value: number; along: number }[] = [];
 	for (const label of found.sort((a, b) => a.along - b.along)) {
 		const last = kept.at(-1);

@@ -62,12 +62,22 @@ describe('unusableCurves', () => {
 	it('is all of the time above the horizon when there is no window', () => {
 		const curves = unusableCurves(strip, []);
 		expect(curves).toHaveLength(1);
-		expect(curves[0]?.[0]?.share).toBeCloseTo(2 / 8, 9);
-		expect(curves[0]?.at(-1)?.share).toBeCloseTo(6 / 8, 9);
+		expect(curves[0]?.points[0]?.share).toBeCloseTo(2 / 8, 9);
+		expect(curves[0]?.points.at(-1)?.share).toBeCloseTo(6 / 8, 9);
+	});
+	it('is split where the sky turns from bright to dark', () => {
+		const dusk = {
+			...strip,
+			bands: [strip.bands[0]!, { startMs: startMs + 4 * 3_600_000, band: 'night' as const }]
+		};
+		const curves = unusableCurves(dusk, []);
+		expect(curves.map(({ bright }) => bright)).toEqual([true, false]);
+		expect(curves[0]?.points.at(-1)).toEqual({ share: 0.5, altDeg: 40 });
+		expect(curves[1]?.points[0]).toEqual({ share: 0.5, altDeg: 40 });
 	});
 	it('leaves a gap where the window is', () => {
 		const curves = unusableCurves(strip, [window(3, 5)]);
-		expect(curves.map((curve) => [curve[0]?.share, curve.at(-1)?.share])).toEqual([
+		expect(curves.map(({ points }) => [points[0]?.share, points.at(-1)?.share])).toEqual([
 			[2 / 8, 3 / 8],
 			[5 / 8, 6 / 8]
 		]);

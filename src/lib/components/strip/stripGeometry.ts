@@ -70,8 +70,11 @@ export function usableCurves(strip: Strip, windows: readonly BoardWindow[]): Cur
 	return windowShares(strip, windows).map(({ from, to }) => curveBetween(strip, from, to));
 }
 
+/** A stretch of curve that lies on bright or on dark bands only, so that one colour can be seen on it. */
+export type ShadedCurve = { points: CurvePoint[]; bright: boolean };
+
 /** The curve outside the windows where the target is above the horizon: what is dotted. */
-export function unusableCurves(strip: Strip, windows: readonly BoardWindow[]): CurvePoint[][] {
+export function unusableCurves(strip: Strip, windows: readonly BoardWindow[]): ShadedCurve[] {
 	const gaps: { from: number; to: number }[] = [];
 	let end = 0;
 	for (const { from, to } of windowShares(strip, windows)) {
@@ -79,7 +82,24 @@ export function unusableCurves(strip: Strip, windows: readonly BoardWindow[]): C
 		end = Math.max(end, to);
 	}
 	if (end < 1) gaps.push({ from: end, to: 1 });
-	return gaps.flatMap(({ from, to }) => aboveHorizon(curveBetween(strip, from, to)));
+	return gaps.flatMap((gap) =>
+		shades(strip).flatMap(({ from, to, bright }) => {
+			const [start, end] = [Math.max(gap.from, from), Math.min(gap.to, to)];
+			if (end <= start) return [];
+			return aboveHorizon(curveBetween(strip, start, end)).map((points) => ({ points, bright }));
+		})
+	);
+}
+
+function shades(strip: Strip): { from: number; to: number; bright: boolean }[] {
+	const list: { from: number; to: number; bright: boolean }[] = [];
+	for (const { from, to, band } of bandSpans(strip)) {
+		const bright = band === 'day' || band === 'civil';
+		const last = list.at(-1);
+		if (last?.bright === bright) last.to = to;
+		else list.push({ from, to, bright });
+	}
+	return list;
 }
 
 function aboveHorizon(curve: CurvePoint[]): CurvePoint[][] {
