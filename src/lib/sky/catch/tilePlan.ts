@@ -40,7 +40,7 @@ export function tilePlan(input: PlanInput): PlanStep[] {
 	const { tiles, spec, fromMs } = input;
 	const exposureMs = spec.exposureS * 1000;
 	const left = [...tiles]
-		.filter(({ windows }) => windows.length > 0)
+		.filter(({ tile, windows }) => windows.length > 0 && tile.probability > 0)
 		.sort((a, b) => b.tile.probability - a.tile.probability);
 	const plan: PlanStep[] = [];
 	let clockMs = fromMs;

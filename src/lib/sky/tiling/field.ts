@@ -18,8 +18,9 @@ export type Field = {
 		cos: number;
 		sin: number;
 	}[];
-	/** Distance of the farthest corner from the pointing, tangent. */
+	/** Distance of the farthest corner from the pointing, tangent, and the cosine of that angle. */
 	reach: number;
+	reachCosine: number;
 };
 
 /** Prepares a field; throws a RangeError without detectors or with a size not above 0 and below 90°. */
@@ -48,16 +49,14 @@ export function preparedField(detectors: readonly Detector[]): Field {
 			sin: Math.sin(rotationRad)
 		};
 	});
-	return {
-		detectors: parts,
-		reach: Math.max(
-			...parts.map(
-				(part) =>
-					Math.hypot(part.offsetX, part.offsetY) +
-					(part.round ? part.halfWidth : Math.hypot(part.halfWidth, part.halfHeight))
-			)
+	const reach = Math.max(
+		...parts.map(
+			(part) =>
+				Math.hypot(part.offsetX, part.offsetY) +
+				(part.round ? part.halfWidth : Math.hypot(part.halfWidth, part.halfHeight))
 		)
-	};
+	);
+	return { detectors: parts, reach, reachCosine: Math.cos(Math.atan(reach)) };
 }
 
 /** Whether a point of the tangent plane (tangents to east and north of the pointing) falls on a detector. */
@@ -99,10 +98,9 @@ export function tileContains(
 	z: number
 ): boolean {
 	const depth = along[0]! * x + along[1]! * y + along[2]! * z;
-	if (depth <= 0) return false;
+	if (depth < field.reachCosine) return false;
 	const e = (east[0]! * x + east[1]! * y + east[2]! * z) / depth;
 	const n = (north[0]! * x + north[1]! * y + north[2]! * z) / depth;
-	if (Math.abs(e) > field.reach || Math.abs(n) > field.reach) return false;
 	return fieldContains(field, e, n);
 }
 

@@ -1,56 +1,5 @@
 import { DEG_PER_RAD, normaliseDeg, RAD_PER_DEG, type Equatorial } from '../angle';
-import { offset, positionAngleDeg, separationDeg } from '../vector';
-import type { Detector } from '../visibility/telescope';
-
-/** A regular arrangement of fields: the cell of a position, by key, and the cell's centre. */
-export type Lattice = (position: Equatorial) => { key: number; centre: Equatorial };
-
-/** Keys are row × this + column. */
-const KEY_STRIDE = 1 << 22;
-
-/** The rectangle or circle that is repeated: the detector itself, or the box around a mosaic. */
-export type Cell = {
-	round: boolean;
-	widthDeg: number;
-	heightDeg: number;
-	rotationDeg: number;
-	offsetXDeg: number;
-	offsetYDeg: number;
-};
-
-/** The cell to repeat for a field of detectors. */
-export function fieldCell(detectors: readonly Detector[]): Cell {
-	const [first] = detectors;
-	if (!first) throw new RangeError('detectors is empty; a field needs at least one');
-	const rotationDeg = first.shape === 'circle' ? 0 : first.rotationDeg;
-	if (detectors.length === 1) {
-		const round = first.shape === 'circle';
-		return {
-			round,
-			widthDeg: round ? 2 * first.radiusDeg : first.widthDeg,
-			heightDeg: round ? 2 * first.radiusDeg : first.heightDeg,
-			rotationDeg,
-			offsetXDeg: first.offsetXDeg,
-			offsetYDeg: first.offsetYDeg
-		};
-	}
-	const half = (detector: Detector, side: 'x' | 'y') =>
-		detector.shape === 'circle'
-			? detector.radiusDeg
-			: (side === 'x' ? detector.widthDeg : detector.heightDeg) / 2;
-	const west = Math.min(...detectors.map((d) => d.offsetXDeg - half(d, 'x')));
-	const east = Math.max(...detectors.map((d) => d.offsetXDeg + half(d, 'x')));
-	const south = Math.min(...detectors.map((d) => d.offsetYDeg - half(d, 'y')));
-	const north = Math.max(...detectors.map((d) => d.offsetYDeg + half(d, 'y')));
-	return {
-		round: false,
-		widthDeg: east - west,
-		heightDeg: north - south,
-		rotationDeg,
-		offsetXDeg: (east + west) / 2,
-		offsetYDeg: (north + south) / 2
-	};
-}
+import { KEY_STRIDE, type Lattice } from './cell';
 
 /**
  * Rows of constant declination for rectangles aligned with north; without holes at any declination, poles
@@ -156,51 +105,4 @@ function rowAbove(below: Row, cell: { widthDeg: number; heightDeg: number }): Ro
 		row = bandRow(row.decDeg - (row.bottomDeg - below.topDeg), cell);
 	}
 	return row.topDeg > below.topDeg + 1e-9 ? row : pole;
-}
-
-/**
- * A flat lattice around the region's middle, kept at true distances from it: hexagonal for circles, turned for
- * rotated rectangles. Distances across the line of sight shrink away from the middle, so circles leave no
- * holes; rectangles far from the middle turn against the lattice and may.
- */
-export function flatLattice(
-	cell: Cell,
-	middle: Equatorial,
-	shift: { x: number; y: number }
-): Lattice {
-	const [c, s] = [
-		Math.cos(cell.rotationDeg * RAD_PER_DEG),
-		Math.sin(cell.rotationDeg * RAD_PER_DEG)
-	];
-	// 1 % less than touching, against rounding and distortion.
-	const stepX = 0.99 * (cell.round ? (Math.sqrt(3) / 2) * cell.widthDeg : cell.widthDeg);
-	const stepY = 0.99 * (cell.round ? 0.75 * cell.heightDeg : cell.heightDeg);
-	return (position) => {
-		const distanceDeg = separationDeg(middle, position);
-		const angleRad = positionAngleDeg(middle, position) * RAD_PER_DEG;
-		const east = distanceDeg * Math.sin(angleRad);
-		const north = distanceDeg * Math.cos(angleRad);
-		const x = (east * c - north * s) / stepX - shift.x;
-		const y = (east * s + north * c) / stepY - shift.y;
-		let best = { column: 0, row: 0, distance2: Infinity };
-		const nearRow = Math.round(y);
-		for (const row of cell.round ? [nearRow - 1, nearRow, nearRow + 1] : [nearRow]) {
-			const stagger = cell.round && row % 2 !== 0 ? 0.5 : 0;
-			const column = Math.round(x - stagger);
-			const distance2 = ((x - stagger - column) * stepX) ** 2 + ((y - row) * stepY) ** 2;
-			if (distance2 < best.distance2) best = { column: column + stagger, row, distance2 };
-		}
-		const cellX = (best.column + shift.x) * stepX;
-		const cellY = (best.row + shift.y) * stepY;
-		const cellEast = cellX * c + cellY * s;
-		const cellNorth = -cellX * s + cellY * c;
-		return {
-			key: best.row * KEY_STRIDE + 2 * best.column,
-			centre: offset(
-				middle,
-				Math.hypot(cellEast, cellNorth),
-				Math.atan2(cellEast, cellNorth) * DEG_PER_RAD
-			)
-		};
-	};
 }
