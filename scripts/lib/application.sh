@@ -140,7 +140,7 @@ start_watching() {
 		die 'The worker build failed; its last lines are above.'
 	}
 	spawn workers "$LOG_DIR/workers.log" node node_modules/vite/bin/vite.js build -c vite.workers.config.ts --watch
-	NODE_EXTRA_CA_CERTS=$LOCAL/push/certificate.pem spawn app - node node_modules/vite/bin/vite.js dev --host 127.0.0.1 --port "$PORT" --strictPort
+	NODE_EXTRA_CA_CERTS=$LOCAL/push/certificate.pem spawn app - node node_modules/vite/bin/vite.js dev --host 127.0.0.1 --port "$PORT" --strictPort --clearScreen false
 	wait_until_answers app "$PORT" /healthz 60 "$LOG_DIR/workers.log"
 }
 
