@@ -12,6 +12,24 @@ export default {
 		// The origin check is the first handle in hooks.server.ts: Kit's own refuses form posts
 		// that carry an API key and no Origin, and lets JSON through.
 		csrf: { trustedOrigins: ['*'] },
+		csp: {
+			mode: 'auto',
+			directives: {
+				'default-src': ['self'],
+				'script-src': ['self'],
+				// Charts and strips place their parts by inline styles.
+				'style-src': ['self', 'unsafe-inline'],
+				'img-src': ['self', 'data:'],
+				'font-src': ['self'],
+				'connect-src': ['self'],
+				'worker-src': ['self'],
+				'manifest-src': ['self'],
+				'object-src': ['none'],
+				'base-uri': ['self'],
+				'form-action': ['self'],
+				'frame-ancestors': ['none']
+			}
+		},
 		typescript: {
 			config: (config) => {
 				config.include.push(

@@ -99,7 +99,8 @@ export const JOURNAL_KINDS = [
 	'split',
 	'merged',
 	'retracted',
-	'closed'
+	'closed',
+	'reopened'
 ] as const;
 export type JournalKind = (typeof JOURNAL_KINDS)[number];
 

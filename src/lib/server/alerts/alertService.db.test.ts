@@ -3,6 +3,7 @@ import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest';
 import { circle, circlePacket, openWorld, type World } from '../../../../tests/database/world';
 import { alert, packet } from '../db/schema/alerts';
 import { journal, region, transient } from '../db/schema/transients';
+import { decideTransient, takeTransient } from '../transients/transientService';
 import type { AuthenticatedStream } from '../streams/streamKeyService';
 
 let world: World;
@@ -254,6 +255,23 @@ describe('updates and retractions', () => {
 			.from(transient)
 			.where(eq(transient.designation, late.receipt.designation));
 		expect(row!.state).toBe('retracted');
+	});
+});
+
+describe('a dropped transient', () => {
+	it('asks to be taken again when a new alert comes', async () => {
+		const duty = await world.person('duty');
+		const first = await world.receive(gamma, circlePacket({ packetId: packetId('A'), t0: t0() }));
+		const { designation } = first.receipt;
+		await takeTransient(world.app, duty, designation);
+		await decideTransient(world.app, duty, designation, { decision: 'drop', reason: '' });
+		const shape = circle(83.6, -8.4, 0.03);
+		await world.receive(xray, circlePacket({ packetId: packetId('B'), t0: t0(), shape }));
+		const [row] = await world.app.database
+			.select()
+			.from(transient)
+			.where(eq(transient.designation, designation));
+		expect(row).toMatchObject({ state: 'open', decision: null, takenBy: null });
 	});
 });
 

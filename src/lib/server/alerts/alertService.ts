@@ -1,6 +1,6 @@
 import { createHash } from 'node:crypto';
 import { isDeepStrictEqual } from 'node:util';
-import { eq } from 'drizzle-orm';
+import { and, eq, or } from 'drizzle-orm';
 import { alertPacketSchema, type AlertPacket } from '../../domain/alertPacket';
 import type { App } from '../app';
 import type { Transaction } from '../db/database';
@@ -105,6 +105,7 @@ export async function receiveAlert(
 			summary: arrivalSummary(settings.name, packet, placement),
 			detail: { alertId: row!.id, stream: settings.code, t0: packet.t0, logOdds: placement.logOdds }
 		});
+		if (placement.live) await askAgainIfDropped(tx, home.id, receivedAt);
 		const touched = new Set([home.id, ...placement.withdrawn.map((item) => item.transientId)]);
 		for (const id of touched) {
 			await deriveRegion(
@@ -175,6 +176,38 @@ async function homeOf(
 		})
 		.returning({ id: transient.id, designation: transient.designation });
 	return home!;
+}
+
+/**
+ * A transient that was dropped or closed and hears a new live alert needs somebody to take it again:
+ * what was not worth it with a wide circle may be worth it with a position.
+ */
+async function askAgainIfDropped(tx: Transaction, transientId: string, at: Date): Promise<void> {
+	const reopened = await tx
+		.update(transient)
+		.set({
+			takenBy: null,
+			takenAt: null,
+			decision: null,
+			decidedBy: null,
+			decidedAt: null,
+			decisionReason: ''
+		})
+		.where(
+			and(
+				eq(transient.id, transientId),
+				or(eq(transient.state, 'closed'), eq(transient.decision, 'drop'))
+			)
+		)
+		.returning({ id: transient.id });
+	if (reopened.length === 0) return;
+	await writeJournal(tx, {
+		transientId,
+		kind: 'reopened',
+		at,
+		actorId: null,
+		summary: 'A new alert reopened it: somebody has to take it again'
+	});
 }
 
 function arrivalSummary(streamName: string, packet: AlertPacket, placement: Placement): string {

@@ -170,6 +170,14 @@ describe('a slot', () => {
 		});
 	});
 
+	it('can’t be on sky long before it begins', async () => {
+		const { slotId } = await claimSlot(world.app, observers[3]!, claimOf('ALP', 60, 20));
+		await expect(startSlot(world.app, observers[3]!, slotId)).rejects.toMatchObject({
+			code: 'wrongState'
+		});
+		await releaseSlot(world.app, observers[3]!, slotId);
+	});
+
 	it('is reported once when the button is pressed twice', async () => {
 		const { slotId } = await claimSlot(world.app, observers[0]!, claimOf('ALQ', 0, 20));
 		const press = () =>

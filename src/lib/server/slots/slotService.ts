@@ -23,6 +23,8 @@ export type SlotRow = typeof slot.$inferSelect;
 
 /** A claim may begin this long ago: the form was open for a while. */
 const START_GRACE_MINUTES = 2;
+/** Slewing may begin this long before a slot does (common practice, no source). */
+const ON_SKY_EARLY_MINUTES = 15;
 
 /**
  * Claims a telescope for a transient over a time range inside one of its windows. The pointing is
@@ -225,6 +227,10 @@ async function moveSlot(
 		if (row.state === to) return;
 		requireTransition(row.state, to);
 		const now = app.now();
+		const earliest = new Date(row.during.start.getTime() - ON_SKY_EARLY_MINUTES * 60_000);
+		if (to === 'on sky' && now < earliest) {
+			throw new DomainError('wrongState', `This slot begins at ${clock(row.during.start)} UTC.`);
+		}
 		await tx
 			.update(slot)
 			.set({
