@@ -34,6 +34,15 @@ export const publishSchema = z.strictObject({
 });
 export type PublishInput = z.output<typeof publishSchema>;
 
+/** What the archive's address may hold. */
+export const circularFilterSchema = z.object({
+	designation: z.string().max(20).optional(),
+	search: z.string().trim().max(100).optional(),
+	/** Only numbers below this one: the next page. */
+	before: z.coerce.number().int().min(1).max(999_999_999).optional(),
+	mine: z.literal('on').optional()
+});
+
 /** A pre-filled text, not yet kept anywhere. */
 export type CircularDraft = {
 	draftId: string;

@@ -40,6 +40,25 @@ export const partnerReportSchema = z
 	});
 export type PartnerReport = z.output<typeof partnerReportSchema>;
 
+/**
+ * The same as an HTML form sends it: its date box has no zone and means UTC, and what belongs to the
+ * other kind of report may be left over in a hidden box.
+ */
+export const partnerReportFormSchema = z.preprocess((form) => {
+	const { magnitude, magnitudeError, limitMag, observedAt, ...rest } = form as Record<
+		string,
+		unknown
+	>;
+	return {
+		...rest,
+		observedAt:
+			typeof observedAt === 'string' && /^[\d-]+T[\d:]+$/.test(observedAt)
+				? `${observedAt.length === 16 ? `${observedAt}:00` : observedAt}Z`
+				: observedAt,
+		...(rest.kind === 'detection' ? { magnitude, magnitudeError } : { limitMag })
+	};
+}, partnerReportSchema);
+
 export type PartnerReportRow = {
 	designation: string;
 	kind: 'detection' | 'limit';

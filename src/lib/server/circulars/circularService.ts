@@ -1,5 +1,5 @@
 import { randomUUID } from 'node:crypto';
-import { eq } from 'drizzle-orm';
+import { and, desc, eq, sql } from 'drizzle-orm';
 import {
 	type CircularDetail,
 	type CircularDraft,
@@ -47,6 +47,25 @@ export async function draftCircular(
 			push: recipients.filter(({ channel }) => channel === 'push').length
 		}
 	};
+}
+
+/** The transients that a circular can be written about, latest first, with how many they have. */
+export async function publishableTransients(
+	app: App,
+	actor: Actor | null
+): Promise<{ designation: string; t0: string; circulars: number }[]> {
+	requirePermission(actor, 'writeCircular');
+	const rows = await app.database
+		.select({
+			designation: transient.designation,
+			t0: transient.t0,
+			circulars: sql<number>`(select count(*)::int from ${circular} where ${circular.transientId} = ${transient.id})`
+		})
+		.from(transient)
+		.where(and(eq(transient.isTest, false), eq(transient.isDrill, false)))
+		.orderBy(desc(transient.t0))
+		.limit(50);
+	return rows.map((row) => ({ ...row, t0: row.t0.toISOString() }));
 }
 
 /**

@@ -1,0 +1,28 @@
+import { z } from 'zod';
+import { circularDetail } from '$lib/server/circulars/circularService';
+import { retryDelivery } from '$lib/server/circulars/deliveryLedgerService';
+import { loadPage, runAction } from '$lib/server/http/page';
+import { parseInput } from '$lib/server/http/problem';
+import type { Actions, PageServerLoad } from './$types';
+
+export const load: PageServerLoad = (event) =>
+	loadPage(event, async () => ({
+		circular: await circularDetail(
+			event.locals.app,
+			event.locals.actor,
+			Number(event.params.number)
+		)
+	}));
+
+const retrySchema = z.object({ deliveryId: z.uuid() });
+
+export const actions: Actions = {
+	retry: async ({ request, locals }) => {
+		const entered = Object.fromEntries(await request.formData());
+		return runAction(async () => {
+			const { deliveryId } = parseInput(retrySchema, entered);
+			await retryDelivery(locals.app, locals.actor, deliveryId);
+			return { retried: deliveryId };
+		});
+	}
+};

@@ -1,0 +1,33 @@
+import { redirect } from '@sveltejs/kit';
+import { publishSchema } from '$lib/domain/circular';
+import {
+	draftCircular,
+	listCirculars,
+	publishableTransients,
+	publishCircular
+} from '$lib/server/circulars/circularService';
+import { loadPage, runAction } from '$lib/server/http/page';
+import { parseInput } from '$lib/server/http/problem';
+import type { Actions, PageServerLoad } from './$types';
+
+export const load: PageServerLoad = (event) =>
+	loadPage(event, async () => {
+		const { app, actor } = event.locals;
+		const designation = event.url.searchParams.get('for');
+		const choices = await publishableTransients(app, actor);
+		if (!designation) return { choices, draft: null, earlier: [] };
+		const draft = await draftCircular(app, actor, designation);
+		const { circulars } = await listCirculars(app, actor, { designation });
+		return { choices, draft, earlier: circulars };
+	});
+
+export const actions: Actions = {
+	default: async ({ request, locals }) => {
+		const entered = Object.fromEntries(await request.formData()) as Record<string, string>;
+		const outcome = await runAction(async () =>
+			publishCircular(locals.app, locals.actor, parseInput(publishSchema, entered))
+		);
+		if ('number' in outcome) redirect(303, `/circulars/${outcome.number}`);
+		return outcome;
+	}
+};
