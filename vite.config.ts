@@ -27,7 +27,11 @@ export default defineConfig({
 				test: {
 					name: 'db',
 					environment: 'node',
-					include: ['src/**/*.db.test.ts', 'tests/http/**/*.test.ts', 'tests/security/**/*.test.ts'],
+					include: [
+						'src/**/*.db.test.ts',
+						'tests/http/**/*.test.ts',
+						'tests/security/**/*.test.ts'
+					],
 					globalSetup: ['tests/database/globalSetup.ts'],
 					testTimeout: 30_000,
 					hookTimeout: 60_000,
