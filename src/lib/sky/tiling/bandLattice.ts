@@ -1,5 +1,5 @@
 import { DEG_PER_RAD, normaliseDeg, RAD_PER_DEG, type Equatorial } from '../angle';
-import { KEY_STRIDE, type Lattice } from './cell';
+import { cellKey, cellOfKey, type Lattice } from './cell';
 
 /**
  * Rows of constant declination for rectangles aligned with north; without holes at any declination, poles
@@ -15,20 +15,23 @@ export function bandLattice(
 	// Rows are made as far as positions ask for them.
 	const north = new RowStack(first, cell);
 	const south = new RowStack(mirrored(first), cell);
-	return (position) => {
-		const northern = position.decDeg > first.bottomDeg;
-		const index = northern ? north.rowFor(position.decDeg) : south.rowFor(-position.decDeg);
-		const row = (northern ? north : south).rows[index]!;
-		const spacingDeg = 360 / row.columns;
-		const fromMiddleDeg = normaliseDeg(position.raDeg - middle.raDeg);
-		const column = (Math.round(fromMiddleDeg / spacingDeg - shift.x) + row.columns) % row.columns;
-		return {
-			key: (northern ? index : -index) * KEY_STRIDE + column,
-			centre: {
-				raDeg: normaliseDeg(middle.raDeg + (column + shift.x) * spacingDeg),
-				decDeg: northern ? row.decDeg : -row.decDeg
-			}
-		};
+	return {
+		keyOf: (position) => {
+			const northern = position.decDeg > first.bottomDeg;
+			const index = northern ? north.rowFor(position.decDeg) : south.rowFor(-position.decDeg);
+			const { columns } = (northern ? north : south).rows[index]!;
+			const turns = normaliseDeg(position.raDeg - middle.raDeg) / 360;
+			const column = (Math.round(turns * columns - shift.x) + columns) % columns;
+			return cellKey(northern ? index : -index, column);
+		},
+		centreOf: (key) => {
+			const { row: index, column } = cellOfKey(key);
+			const row = index >= 0 ? north.rows[index]! : mirrored(south.rows[-index]!);
+			return {
+				raDeg: normaliseDeg(middle.raDeg + ((column + shift.x) * 360) / row.columns),
+				decDeg: row.decDeg
+			};
+		}
 	};
 }
 

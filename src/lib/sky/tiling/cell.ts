@@ -2,11 +2,27 @@ import { RAD_PER_DEG, type Equatorial } from '../angle';
 import { deproject, project, type TangentPoint } from '../vector';
 import type { Detector } from '../visibility/telescope';
 
-/** A regular arrangement of fields: the cell of a position, by key, and the cell's centre. */
-export type Lattice = (position: Equatorial) => { key: number; centre: Equatorial };
+/**
+ * A regular arrangement of fields: the key of the cell that a place falls into (`plane` is the place on the
+ * equidistant plane about the lattice's middle), and the centre of a cell.
+ */
+export type Lattice = {
+	keyOf: (position: Equatorial, plane: TangentPoint) => number;
+	centreOf: (key: number) => Equatorial;
+};
 
-/** Keys are row × this + column. */
-export const KEY_STRIDE = 1 << 22;
+const KEY_STRIDE = 1 << 22;
+
+/** One number for a row and a column, each within ±2 million. */
+export function cellKey(row: number, column: number): number {
+	return row * KEY_STRIDE + column + KEY_STRIDE / 2;
+}
+
+/** Inverse of `cellKey`. */
+export function cellOfKey(key: number): { row: number; column: number } {
+	const row = Math.floor(key / KEY_STRIDE);
+	return { row, column: key - row * KEY_STRIDE - KEY_STRIDE / 2 };
+}
 
 /** The rectangle or circle that is repeated: the detector itself, or the box around a mosaic. */
 export type Cell = {

@@ -1,8 +1,8 @@
 import type { Equatorial } from '../angle';
-import { deproject, toVector } from '../vector';
+import { deproject, toVector, type TangentPoint } from '../vector';
 import type { Detector } from '../visibility/telescope';
 import { fieldAreaDeg2 } from './field';
-import type { RegionSample } from './regionSample';
+import { equidistant, type RegionSample } from './regionSample';
 
 const MOST_SUBPOINTS = 64;
 const MOST_SAMPLES = 12_000;
@@ -12,6 +12,8 @@ const GOLDEN_ANGLE_RAD = Math.PI * (3 - Math.sqrt(5));
 export type Samples = {
 	count: number;
 	positions: Equatorial[];
+	/** On the equidistant plane about the region's middle. */
+	plane: TangentPoint[];
 	x: Float64Array;
 	y: Float64Array;
 	z: Float64Array;
@@ -47,6 +49,7 @@ export function coveringSamples(
 	const samples: Samples = {
 		count,
 		positions: [],
+		plane: [],
 		x: new Float64Array(count),
 		y: new Float64Array(count),
 		z: new Float64Array(count),
@@ -69,6 +72,7 @@ export function coveringSamples(
 						});
 			const vector = parts === 1 ? null : toVector(position);
 			samples.positions.push(position);
+			samples.plane.push(parts === 1 ? region.plane[index]! : equidistant(region.middle, position));
 			samples.x[at] = vector?.x ?? region.x[index]!;
 			samples.y[at] = vector?.y ?? region.y[index]!;
 			samples.z[at] = vector?.z ?? region.z[index]!;

@@ -1,6 +1,6 @@
 import { DEG_PER_RAD, normaliseDeg, RAD_PER_DEG, type Equatorial } from '../angle';
-import { deproject, offset, positionAngleDeg, separationDeg } from '../vector';
-import { cellOffset, KEY_STRIDE, pointingFor, type Cell, type Lattice } from './cell';
+import { deproject, offset, positionAngleDeg } from '../vector';
+import { cellKey, cellOffset, cellOfKey, pointingFor, type Cell, type Lattice } from './cell';
 
 /**
  * A flat lattice around the region's middle, kept at true distances from it: hexagonal for circles. Distances
@@ -17,34 +17,32 @@ export function flatLattice(
 	// 1 % less than touching, against rounding and distortion.
 	const stepX = 0.99 * (cell.round ? (Math.sqrt(3) / 2) * cell.widthDeg : cell.widthDeg);
 	const stepY = 0.99 * (cell.round ? 0.75 * cell.heightDeg : cell.heightDeg);
-	return (position) => {
-		const distanceDeg = separationDeg(middle, position);
-		const angleRad = positionAngleDeg(middle, position) * RAD_PER_DEG;
-		const east = distanceDeg * Math.sin(angleRad);
-		const north = distanceDeg * Math.cos(angleRad);
-		const x = (east * c - north * s) / stepX - shift.x;
-		const y = (east * s + north * c) / stepY - shift.y;
-		const nearRow = Math.round(y);
-		let best = { column: 0, row: 0, distance2: Infinity };
-		for (let row = nearRow - 1; row <= nearRow + 1; row += 1) {
-			if (!cell.round && row !== nearRow) continue;
-			const stagger = cell.round && row % 2 !== 0 ? 0.5 : 0;
-			const column = Math.round(x - stagger);
-			const distance2 = ((x - stagger - column) * stepX) ** 2 + ((y - row) * stepY) ** 2;
-			if (distance2 < best.distance2) best = { column: column + stagger, row, distance2 };
+	return {
+		keyOf: (_, { eastDeg, northDeg }) => {
+			const x = (eastDeg * c - northDeg * s) / stepX - shift.x;
+			const y = (eastDeg * s + northDeg * c) / stepY - shift.y;
+			const nearRow = Math.round(y);
+			if (!cell.round) return cellKey(nearRow, 2 * Math.round(x));
+			let [bestRow, bestColumn, least] = [0, 0, Infinity];
+			for (let row = nearRow - 1; row <= nearRow + 1; row += 1) {
+				// Every other row is moved by half a step; columns count half steps.
+				const stagger = row % 2 === 0 ? 0 : 1;
+				const column = 2 * Math.round(x - stagger / 2) + stagger;
+				const dx = (x - column / 2) * stepX;
+				const dy = (y - row) * stepY;
+				const distance2 = dx * dx + dy * dy;
+				if (distance2 < least) [bestRow, bestColumn, least] = [row, column, distance2];
+			}
+			return cellKey(bestRow, bestColumn);
+		},
+		centreOf: (key) => {
+			const { row, column } = cellOfKey(key);
+			const x = (column / 2 + shift.x) * stepX;
+			const y = (row + shift.y) * stepY;
+			const east = x * c + y * s;
+			const north = y * c - x * s;
+			return offset(middle, Math.hypot(east, north), Math.atan2(east, north) * DEG_PER_RAD);
 		}
-		const cellX = (best.column + shift.x) * stepX;
-		const cellY = (best.row + shift.y) * stepY;
-		const cellEast = cellX * c + cellY * s;
-		const cellNorth = -cellX * s + cellY * c;
-		return {
-			key: best.row * KEY_STRIDE + 2 * best.column,
-			centre: offset(
-				middle,
-				Math.hypot(cellEast, cellNorth),
-				Math.atan2(cellEast, cellNorth) * DEG_PER_RAD
-			)
-		};
 	};
 }
 

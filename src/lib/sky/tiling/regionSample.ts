@@ -1,6 +1,6 @@
 import { DEG_PER_RAD, RAD_PER_DEG, type Equatorial } from '../angle';
 import type { RegionPoints } from '../regions/jointRegion';
-import { toEquatorial } from '../vector';
+import { positionAngleDeg, separationDeg, toEquatorial, type TangentPoint } from '../vector';
 
 const NEIGHBOURS = 6;
 const COVERED_SHARE = 0.9;
@@ -9,6 +9,8 @@ const COVERED_SHARE = 0.9;
 export type RegionSample = {
 	count: number;
 	positions: Equatorial[];
+	/** The points on the equidistant plane about `middle`. */
+	plane: TangentPoint[];
 	x: Float64Array;
 	y: Float64Array;
 	z: Float64Array;
@@ -69,7 +71,28 @@ export function regionSample(points: RegionPoints): RegionSample {
 			? toEquatorial(sum)
 			: { raDeg: points.raDeg[best]!, decDeg: points.decDeg[best]! };
 	const positions = points.raDeg.map((raDeg, i) => ({ raDeg, decDeg: points.decDeg[i]! }));
-	return { count, positions, x, y, z, probability, areaDeg2, byDensity, coreCount, total, middle };
+	const plane = positions.map((position) => equidistant(middle, position));
+	return {
+		count,
+		positions,
+		plane,
+		x,
+		y,
+		z,
+		probability,
+		areaDeg2,
+		byDensity,
+		coreCount,
+		total,
+		middle
+	};
+}
+
+/** Place on the equidistant plane about `middle`: true distance and direction from there. */
+export function equidistant(middle: Equatorial, position: Equatorial): TangentPoint {
+	const distanceDeg = separationDeg(middle, position);
+	const angleRad = positionAngleDeg(middle, position) * RAD_PER_DEG;
+	return { eastDeg: distanceDeg * Math.sin(angleRad), northDeg: distanceDeg * Math.cos(angleRad) };
 }
 
 /** Area per point, square degrees: a disc to the sixth nearest point holds six points' areas. */

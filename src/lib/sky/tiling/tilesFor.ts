@@ -116,12 +116,12 @@ function mostTurnDeg(samples: Samples, cell: Cell, middle: Equatorial): number {
 function coreCells(
 	samples: Samples,
 	lattice: Lattice
-): Map<number, { centre: Equatorial; probability: number; core: boolean }> {
-	const cells = new Map<number, { centre: Equatorial; probability: number; core: boolean }>();
+): Map<number, { probability: number; core: boolean }> {
+	const cells = new Map<number, { probability: number; core: boolean }>();
 	for (let i = 0; i < samples.count; i += 1) {
-		const { key, centre } = lattice(samples.positions[i]!);
+		const key = lattice.keyOf(samples.positions[i]!, samples.plane[i]!);
 		let cell = cells.get(key);
-		if (!cell) cells.set(key, (cell = { centre, probability: 0, core: false }));
+		if (!cell) cells.set(key, (cell = { probability: 0, core: false }));
 		cell.probability += samples.probability[i]!;
 		if (samples.core[i] === 1) cell.core = true;
 	}
@@ -131,9 +131,9 @@ function coreCells(
 
 /** A field on every cell of the lattice that holds a core sample, most probable first. */
 function lay(samples: Samples, cell: Cell, lattice: Lattice): Tile[] {
-	return [...coreCells(samples, lattice).values()]
-		.sort((a, b) => b.probability - a.probability)
-		.map(({ centre }) => ({ centre: pointingFor(centre, cell), rotationDeg: 0 }));
+	return [...coreCells(samples, lattice)]
+		.sort(([, a], [, b]) => b.probability - a.probability)
+		.map(([key]) => ({ centre: pointingFor(lattice.centreOf(key), cell), rotationDeg: 0 }));
 }
 
 /** Pointings of the main detector onto those of its cells that the fields laid so far leave a part of open. */
