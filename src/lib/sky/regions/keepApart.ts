@@ -1,4 +1,4 @@
-import { union } from '../moc/moc';
+import { mocAreaDeg2, union, type MocRanges } from '../moc/moc';
 import { capRadiusDeg } from './cap';
 import type { JointRegion } from './jointRegion';
 import { mixPoints } from './regionPoints';
@@ -14,22 +14,35 @@ export function keepApart(pieces: { region: JointRegion; weight: number }[]): Jo
 		(a, b) => b.weight - a.weight || a.region.area90Deg2 - b.region.area90Deg2
 	);
 	if (!main) throw new RangeError('pieces is empty; it must hold at least one region');
-	const area90Deg2 = sumOf(pieces.map(({ region }) => region.area90Deg2));
+	const half = together(
+		pieces.map(({ region }) => ({ areaDeg2: region.area50Deg2, moc: region.moc50 }))
+	);
+	const most = together(
+		pieces.map(({ region }) => ({ areaDeg2: region.area90Deg2, moc: region.moc90 }))
+	);
 	return {
 		method: 'none',
 		centre: main.region.centre,
 		sigmaDeg: null,
-		area50Deg2: sumOf(pieces.map(({ region }) => region.area50Deg2)),
-		area90Deg2,
-		equivalentRadiusDeg: capRadiusDeg(area90Deg2),
-		moc50: union(...pieces.map(({ region }) => region.moc50)),
-		moc90: union(...pieces.map(({ region }) => region.moc90)),
+		area50Deg2: half.areaDeg2,
+		area90Deg2: most.areaDeg2,
+		equivalentRadiusDeg: capRadiusDeg(most.areaDeg2),
+		moc50: half.moc,
+		moc90: most.moc,
 		points: mixPoints(
 			pieces.map(({ region, weight }) => ({ points: region.points, weight: weight / total }))
 		)
 	};
 }
 
-function sumOf(values: number[]): number {
-	return values.reduce((sum, value) => sum + value, 0);
+/** Coverage of all pieces; their exact areas, less what their coverage maps have in common. */
+function together(pieces: { areaDeg2: number; moc: MocRanges }[]): {
+	areaDeg2: number;
+	moc: MocRanges;
+} {
+	const moc = union(...pieces.map((piece) => piece.moc));
+	const covered = pieces.reduce((sum, piece) => sum + mocAreaDeg2(piece.moc), 0);
+	const sum = pieces.reduce((total, piece) => total + piece.areaDeg2, 0);
+	const largest = Math.max(...pieces.map((piece) => piece.areaDeg2));
+	return { areaDeg2: Math.max(largest, sum - (covered - mocAreaDeg2(moc))), moc };
 }

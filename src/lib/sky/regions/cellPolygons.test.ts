@@ -1,0 +1,46 @@
+import { describe, expect, it } from 'vitest';
+import { coneMoc } from '../moc/coneMoc';
+import { separationDeg } from '../vector';
+import { cellPolygons } from './cellPolygons';
+import { fisherPoints, regionOutlinePoints } from './regionPoints';
+
+const centre = { raDeg: 359.9, decDeg: 62 };
+
+describe('drawing a region', () => {
+	it('gives four corners for every cell, all near the region', () => {
+		const polygons = cellPolygons(coneMoc(centre, 3));
+		expect(polygons.length).toBeGreaterThan(50);
+		for (const polygon of polygons) {
+			expect(polygon).toHaveLength(4);
+			for (const corner of polygon) expect(separationDeg(corner, centre)).toBeLessThan(3.5);
+		}
+	});
+
+	it('merges cells until few enough are left', () => {
+		const few = cellPolygons(coneMoc(centre, 3), 40);
+		expect(few.length).toBeLessThanOrEqual(40);
+		expect(few.length).toBeGreaterThan(4);
+		expect(cellPolygons([], 40)).toEqual([]);
+	});
+
+	it('puts a circle at its radius', () => {
+		const outline = regionOutlinePoints(centre, 2 / 3600, 24);
+		expect(outline).toHaveLength(24);
+		for (const point of outline) expect(separationDeg(point, centre) * 1800).toBeCloseTo(1, 8);
+	});
+});
+
+describe('points of a Fisher density', () => {
+	it('hold the shares that circles hold, and average to the centre', () => {
+		const kappa = 1 / (Math.PI / 180) ** 2;
+		const points = fisherPoints(centre, kappa, 200);
+		const within = (radiusDeg: number) =>
+			points.probability.reduce((sum, probability, i) => {
+				const at = { raDeg: points.raDeg[i] ?? 0, decDeg: points.decDeg[i] ?? 0 };
+				return separationDeg(at, centre) <= radiusDeg ? sum + probability : sum;
+			}, 0);
+		expect(within(1.1774)).toBeCloseTo(0.5, 2);
+		expect(within(2.146)).toBeCloseTo(0.9, 2);
+		expect(within(4)).toBeCloseTo(1, 9);
+	});
+});
