@@ -1,18 +1,9 @@
 import { z } from 'zod';
+import { formNumber } from './formFields';
 import { STREAM_CLASSES, type StreamClass } from './vocabulary';
 
 const text = (most: number, what: string) =>
 	z.string().trim().min(1, `${what} is needed.`).max(most, `At most ${most} characters.`);
-
-/** A number typed into a form; an empty box is refused by its own sentence. */
-export function formNumber(low: number, high: number, unit = ''): z.ZodType<number> {
-	const range = `Must be a number from ${low} to ${high}${unit ? ` ${unit}` : ''}.`;
-	return z
-		.union([z.number(), z.string().trim().min(1, 'A number is needed.').transform(Number)], {
-			error: 'A number is needed.'
-		})
-		.pipe(z.number(range).min(low, range).max(high, range));
-}
 
 const STREAM_FIELDS = {
 	name: text(60, 'A name'),

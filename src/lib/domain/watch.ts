@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { instantSchema } from './alertPacket';
+import { formInstant } from './formFields';
 
 const LONGEST_WATCH_H = 24;
 const HOUR_MS = 3_600_000;
@@ -8,8 +8,8 @@ const HOUR_MS = 3_600_000;
 export const watchSchema = z
 	.strictObject({
 		id: z.uuid().optional(),
-		startAt: instantSchema,
-		endAt: instantSchema,
+		startAt: formInstant,
+		endAt: formInstant,
 		firstPersonId: z.uuid('Choose who is first.'),
 		secondPersonId: z.union([z.uuid(), z.literal('').transform(() => null), z.null()]).default(null)
 	})
