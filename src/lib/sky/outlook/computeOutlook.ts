@@ -1,5 +1,6 @@
 import { apparentVector } from '../ephemeris/instant';
-import { requireInRange } from '../angle';
+import { DEG_PER_RAD, requireInRange } from '../angle';
+import { dot, type Vector } from '../vector';
 import { networkCatch, pointChances, type PointChances } from '../catch/networkCatch';
 import { limitMagAt, planCatch, tilePlan, type PlanStep, type TileOnSky } from '../catch/tilePlan';
 import { regionSample, type RegionSample } from '../tiling/regionSample';
@@ -87,17 +88,21 @@ function prepare(input: OutlookInput): Shared {
 	const sky = sharedSky(startMs, Math.max(endMs, stripEndMs(startMs)));
 	const region = regionSample(input.points);
 	const { raDeg, decDeg, probability } = input.points;
+	const centre = skyTarget(input.centre, sky);
+	const directions = raDeg.map((ra, i) =>
+		apparentVector({ raDeg: ra, decDeg: decDeg[i]! }, sky.span.middle)
+	);
 	const skies = new Map<string, { sky: SiteSky; bands: Strip['bands'] }>();
 	const tilings = new Map<string, { tile: RegionTile; target: SkyTarget }[]>();
 	return {
 		input,
 		region,
 		sky,
-		centre: skyTarget(input.centre, sky),
+		centre,
 		points: {
-			directions: raDeg.map((ra, i) =>
-				apparentVector({ raDeg: ra, decDeg: decDeg[i]! }, sky.span.middle)
-			),
+			directions,
+			centre,
+			radiusDeg: farthestDeg(directions, centre.direction),
 			decDeg,
 			probability
 		},
@@ -177,6 +182,12 @@ function withoutTile({ tile: _, ...planned }: PlanStep): Omit<PlanStep, 'tile'> 
 
 function roundWindow(window: Window): Window {
 	return { ...window, startMs: Math.round(window.startMs), endMs: Math.round(window.endMs) };
+}
+
+function farthestDeg(directions: readonly Vector[], from: Vector): number {
+	let least = 1;
+	for (const direction of directions) least = Math.min(least, dot(direction, from));
+	return Math.acos(Math.max(-1, least)) * DEG_PER_RAD;
 }
 
 function remembered<Value>(known: Map<string, Value>, key: string, make: () => Value): Value {

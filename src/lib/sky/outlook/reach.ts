@@ -1,5 +1,6 @@
 import type { Vector } from '../vector';
 import { limitsAt, type LimitTest } from '../visibility/limitsAt';
+import { targetAltitudeDeg, type SkyTarget } from '../visibility/siteSky';
 import type { TelescopeNights } from '../visibility/targetWindows';
 import type { Window } from '../visibility/telescope';
 
@@ -9,6 +10,9 @@ const EDGE_MS = 1000;
 /** The region's points as apparent directions of date, with their ICRS declination and probability. */
 export type DatedPoints = {
 	directions: Vector[];
+	centre: SkyTarget;
+	/** Distance of the farthest point from the centre, degrees. */
+	radiusDeg: number;
 	decDeg: readonly number[];
 	probability: readonly number[];
 };
@@ -23,7 +27,7 @@ export function reach(
 	fromMs: number,
 	likely: Window | undefined
 ): number {
-	const times = lookTimes(telescope.nights, fromMs, likely);
+	const times = lookTimes(telescope, points, fromMs, likely);
 	if (times.length === 0) return 0;
 	const tests: LimitTest[] = [];
 	let inside = 0;
@@ -48,20 +52,29 @@ export function reach(
 	return total > 0 ? inside / total : 0;
 }
 
+/** Instants of the nights at which some point of the region may be between the altitude limits. */
 function lookTimes(
-	nights: readonly Window[],
+	telescope: TelescopeNights,
+	points: DatedPoints,
 	fromMs: number,
 	likely: Window | undefined
 ): number[] {
-	const times = nights.flatMap((night) => {
+	const { sky, nights } = telescope;
+	const { minAltDeg, maxAltDeg } = telescope.pointing.limits;
+	const times: number[] = [];
+	if (likely) times.push((Math.max(likely.startMs, fromMs) + likely.endMs) / 2);
+	for (const night of nights) {
 		const startMs = Math.max(night.startMs + EDGE_MS, fromMs);
 		const endMs = night.endMs - EDGE_MS;
-		if (endMs < startMs) return [];
+		if (endMs < startMs) continue;
 		const steps = Math.max(1, Math.ceil((endMs - startMs) / STEP_MS));
-		return Array.from({ length: steps + 1 }, (_, i) => startMs + ((endMs - startMs) * i) / steps);
-	});
-	if (likely && times.length > 0) {
-		times.unshift((Math.max(likely.startMs, fromMs) + likely.endMs) / 2);
+		for (let i = 0; i <= steps; i += 1) {
+			const utcMs = startMs + ((endMs - startMs) * i) / steps;
+			const altDeg = targetAltitudeDeg(sky, points.centre, utcMs);
+			if (altDeg < minAltDeg - points.radiusDeg) continue;
+			if (maxAltDeg !== null && altDeg > maxAltDeg + points.radiusDeg) continue;
+			times.push(utcMs);
+		}
 	}
 	return times;
 }
