@@ -17,20 +17,33 @@ export function duskRuns(utcMs: number): BandRun[] {
 	return runs;
 }
 
-export type BandTick = { code: string; name: string; atDeg: number; canObserve: boolean };
+export type BandTick = {
+	code: string;
+	name: string;
+	atDeg: number;
+	canObserve: boolean;
+	/** It stands on a bright shade. */
+	bright: boolean;
+};
 
 /** One tick per telescope; solid where a window on the transient is open at `utcMs`. */
 export function bandTicks(
 	telescopes: readonly BoardTelescope[],
 	transient: BoardTransient | null,
-	utcMs: number
+	utcMs: number,
+	runs: readonly BandRun[]
 ): BandTick[] {
-	return telescopes.map(({ code, name, lonDeg }) => ({
-		code,
-		name,
-		atDeg: (((lonDeg + 180) % 360) + 360) % 360,
-		canObserve: canObserve(transient, code, utcMs)
-	}));
+	return telescopes.map(({ code, name, lonDeg }) => {
+		const atDeg = (((lonDeg + 180) % 360) + 360) % 360;
+		const shade = runs.find(({ fromDeg, toDeg }) => fromDeg <= atDeg && atDeg <= toDeg)?.band;
+		return {
+			code,
+			name,
+			atDeg,
+			canObserve: canObserve(transient, code, utcMs),
+			bright: shade === 'day' || shade === 'civil'
+		};
+	});
 }
 
 /** Whether one of the telescope's windows on the transient is open at the instant. */
