@@ -45,6 +45,9 @@ export function coveringSamples(
 		});
 		if (enough >= 0) chosen = chosen.slice(0, enough + 1);
 	}
+	if (chosen.length === region.count && chosen.every(({ parts }) => parts === 1)) {
+		return unsplit(region);
+	}
 	const count = chosen.reduce((sum, { parts }) => sum + parts, 0);
 	const samples: Samples = {
 		count,
@@ -83,3 +86,18 @@ export function coveringSamples(
 	});
 	return samples;
 }
+
+/** The region's points as they are; made once per region, as most fields need no splitting. */
+function unsplit(region: RegionSample): Samples {
+	const known = unsplitOf.get(region);
+	if (known) return known;
+	const core = new Uint8Array(region.count);
+	for (let k = 0; k < region.coreCount; k += 1) core[region.byDensity[k]!] = 1;
+	const { count, positions, plane, x, y, z, probability } = region;
+	const parent = Int32Array.from({ length: count }, (_, i) => i);
+	const samples = { count, positions, plane, x, y, z, probability, parent, core };
+	unsplitOf.set(region, samples);
+	return samples;
+}
+
+const unsplitOf = new WeakMap<RegionSample, Samples>();

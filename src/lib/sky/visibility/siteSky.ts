@@ -12,14 +12,14 @@ import { skySpan, targetPlace, type SkySpan, type TargetPlace } from '../ephemer
 import { illuminatedFraction, moonPhaseAngleDeg } from '../ephemeris/sunMoon';
 import type { Vector } from '../vector';
 
-const STEP_MS = 600_000;
+const STEP_MS = 1_200_000;
 /** Most that the Moon's place can differ between a site and the Earth's centre, and move within half an hour. */
 const MOON_ALLOWANCE_DEG = 1.03 + 0.35;
 
-/** A span with Sun and Moon sampled every 10 minutes, shared by all sites, telescopes and positions. */
+/** A span with Sun and Moon sampled every 20 minutes, shared by all sites, telescopes and positions. */
 export type SharedSky = {
 	span: SkySpan;
-	/** From start to end of the span, both included, at most 10 minutes apart. */
+	/** From start to end of the span, both included, at most 20 minutes apart. */
 	timesMs: Float64Array;
 	/** Geocentric, kilometres, of date. */
 	sun: Vector[];
@@ -54,7 +54,7 @@ export function skyTarget(position: Equatorial, sky: SharedSky): SkyTarget {
 	};
 }
 
-/** Least of every third sample (30 minutes), geocentric. */
+/** Least of every third sample (an hour), geocentric. */
 function leastDistanceDeg({ x, y, z }: Vector, bodies: Vector[]): number {
 	let largest = -1;
 	for (let i = 0; i < bodies.length + 2; i += 3) {
