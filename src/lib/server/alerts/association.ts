@@ -4,7 +4,7 @@ import {
 	START_LOG_ODDS,
 	logBayesFactor,
 	logBayesOfJoining,
-	priorOdds
+	logPriorOdds
 } from '../../sky/regions/agreement';
 import type { Shape } from '../../sky/regions/shape';
 import type { Transaction } from '../db/database';
@@ -129,9 +129,10 @@ export function logOddsOfAgreement(parts: LivePart[]): number | null {
 }
 
 function logPrior(source: Pick<LivePart, 'alertsPerYear' | 'coincidenceWindowS'>): number {
-	return Math.log(
-		priorOdds({ alertsPerYear: source.alertsPerYear, windowS: source.coincidenceWindowS })
-	);
+	return logPriorOdds({
+		alertsPerYear: source.alertsPerYear,
+		windowS: source.coincidenceWindowS
+	});
 }
 
 /** Regions that do not overlap at all have odds of nought; JSON has no infinity to say so. */
