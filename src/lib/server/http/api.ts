@@ -1,5 +1,7 @@
 import { json, type RequestEvent } from '@sveltejs/kit';
 import type { z } from 'zod';
+import type { Permission } from '../../domain/permissions';
+import { requirePermission } from '../actor';
 import { DomainError } from '../domainError';
 import { parseInput, problemResponse } from './problem';
 
@@ -61,11 +63,13 @@ export function parseJson(body: Buffer): unknown {
 	}
 }
 
-/** Reads a JSON body and parses it with a schema. */
+/** Reads a JSON body and parses it with a schema; who may not is refused before anything is read. */
 export async function readJson<Schema extends z.ZodType>(
-	event: RequestEvent,
+	event: Pick<RequestEvent, 'locals' | 'request'>,
+	permission: Permission,
 	schema: Schema
 ): Promise<z.output<Schema>> {
+	requirePermission(event.locals.actor, permission);
 	if (mediaTypeOf(event.request) !== 'application/json') {
 		throw new DomainError('unsupportedMediaType', 'Send application/json.');
 	}

@@ -19,7 +19,7 @@ export const GET: RequestHandler = ({ locals, url }) =>
 export const POST: RequestHandler = (event) =>
 	answer(async () => {
 		const { app, actor } = event.locals;
-		const input = await readJson(event, publishSchema);
+		const input = await readJson(event, 'writeCircular', publishSchema);
 		const { number, created } = await publishCircular(app, actor, input);
 		return json(
 			{ number },

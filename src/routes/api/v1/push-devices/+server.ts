@@ -12,6 +12,6 @@ export const GET: RequestHandler = ({ locals }) =>
 export const POST: RequestHandler = (event) =>
 	answer(async () => {
 		const { app, actor } = event.locals;
-		const input = await readJson(event, pushDeviceSchema);
+		const input = await readJson(event, 'setPreferences', pushDeviceSchema);
 		return json(await registerPushDevice(app, actor, input), { status: 201 });
 	});

@@ -1,5 +1,4 @@
 import { claimSchema } from '$lib/domain/slot';
-import { requirePermission } from '$lib/server/actor';
 import { answer, readJson } from '$lib/server/http/api';
 import { claimSlot } from '$lib/server/slots/slotService';
 import { listSlots } from '$lib/server/slots/slotList';
@@ -13,7 +12,6 @@ export const GET: RequestHandler = ({ locals }) =>
 export const POST: RequestHandler = (event) =>
 	answer(async () => {
 		const { app, actor } = event.locals;
-		requirePermission(actor, 'claimSlot');
-		const claim = await readJson(event, claimSchema);
+		const claim = await readJson(event, 'claimSlot', claimSchema);
 		return json(await claimSlot(app, actor, claim), { status: 201 });
 	});

@@ -1,5 +1,4 @@
 import { membershipSchema } from '$lib/domain/regroup';
-import { requirePermission } from '$lib/server/actor';
 import { answer, readJson } from '$lib/server/http/api';
 import { setMembership } from '$lib/server/transients/regroupService';
 import type { RequestHandler } from './$types';
@@ -7,7 +6,6 @@ import type { RequestHandler } from './$types';
 export const POST: RequestHandler = (event) =>
 	answer(async () => {
 		const { app, actor } = event.locals;
-		requirePermission(actor, 'regroupAlerts');
-		const input = await readJson(event, membershipSchema);
+		const input = await readJson(event, 'regroupAlerts', membershipSchema);
 		return setMembership(app, actor, event.params.id, input);
 	});

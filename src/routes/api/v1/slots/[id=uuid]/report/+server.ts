@@ -1,5 +1,4 @@
 import { reportSchema } from '$lib/domain/slot';
-import { requirePermission } from '$lib/server/actor';
 import { answer, readJson } from '$lib/server/http/api';
 import { reportSlot } from '$lib/server/reports/reportService';
 import { json } from '@sveltejs/kit';
@@ -8,7 +7,6 @@ import type { RequestHandler } from './$types';
 export const POST: RequestHandler = (event) =>
 	answer(async () => {
 		const { app, actor } = event.locals;
-		requirePermission(actor, 'reportSlot');
-		const input = await readJson(event, reportSchema);
+		const input = await readJson(event, 'reportSlot', reportSchema);
 		return json(await reportSlot(app, actor, event.params.id, input), { status: 201 });
 	});

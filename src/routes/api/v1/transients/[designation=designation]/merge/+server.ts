@@ -1,5 +1,4 @@
 import { mergeSchema } from '$lib/domain/regroup';
-import { requirePermission } from '$lib/server/actor';
 import { answer, readJson } from '$lib/server/http/api';
 import { mergeTransients } from '$lib/server/transients/regroupService';
 import type { RequestHandler } from './$types';
@@ -7,7 +6,6 @@ import type { RequestHandler } from './$types';
 export const POST: RequestHandler = (event) =>
 	answer(async () => {
 		const { app, actor } = event.locals;
-		requirePermission(actor, 'regroupAlerts');
-		const input = await readJson(event, mergeSchema);
+		const input = await readJson(event, 'regroupAlerts', mergeSchema);
 		return mergeTransients(app, actor, event.params.designation, input);
 	});
