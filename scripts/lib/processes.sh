@@ -61,8 +61,22 @@ run_step() {
 	local name=$1 status=0
 	spawn "$@"
 	wait $! || status=$?
+	end_session $!
 	rm -f "$RUN_DIR/$name.pid"
 	return "$status"
+}
+
+# end_session PID: ends what a process that is gone left in its session, as a runner's busy worker may be.
+# Its id is not given to another process while the session has members.
+end_session() {
+	local tenths=50
+	[[ ! -e /proc/$1 ]] || return 0
+	kill -TERM -- "-$1" 2>/dev/null || return 0
+	while ((tenths-- > 0)); do
+		kill -0 -- "-$1" 2>/dev/null || return 0
+		sleep 0.1
+	done
+	kill -KILL -- "-$1" 2>/dev/null || true
 }
 
 # end_process NAME [SIGNAL] [SECONDS]: asks, waits, then ends the whole session of the process.
@@ -73,6 +87,9 @@ end_process() {
 		kill -s "$signal" "$pid" 2>/dev/null || true
 		while ((tenths-- > 0)) && is_running "$name"; do sleep 0.1; done
 		if is_running "$name"; then kill -KILL -- "-$pid" 2>/dev/null || true; fi
+		# Not yet reaped, its id stands as a zombie's until this shell waits for it.
+		wait "$pid" 2>/dev/null || true
+		end_session "$pid"
 	fi
 	rm -f "$RUN_DIR/$name.pid"
 }
