@@ -19,8 +19,3 @@ export const formInstant = z
 	.min(1, 'A date and time is needed.')
 	.transform((text) => (withoutZone.test(text) ? `${text.slice(0, 16)}:00Z` : text))
 	.pipe(instantSchema);
-
-/** An instant as a date-and-time box wants it, UTC: `2026-12-01T04:00`. */
-export function instantForBox(at: string | number | Date): string {
-	return new Date(at).toISOString().slice(0, 16);
-}
