@@ -106,7 +106,7 @@ export async function requestSignInLink(app: App, email: string, to: string): Pr
 	);
 	try {
 		const answer = (await Auth(request, { ...authConfig(app), raw })) as { redirect?: string };
-		if (!answer.redirect?.includes('/auth/sent')) throw unavailable;
+		if (!answer.redirect?.includes('/verify-request')) throw unavailable;
 	} catch (error) {
 		logger.warn({ error: (error as Error).message }, 'sign-in mail');
 		throw unavailable;
