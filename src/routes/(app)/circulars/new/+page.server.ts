@@ -13,7 +13,7 @@ import type { Actions, PageServerLoad } from './$types';
 export const load: PageServerLoad = (event) =>
 	loadPage(event, async () => {
 		const { app, actor } = event.locals;
-		const designation = event.url.searchParams.get('for');
+		const designation = event.url.searchParams.get('transient');
 		const choices = await publishableTransients(app, actor);
 		if (!designation) return { choices, draft: null, earlier: [] };
 		const draft = await draftCircular(app, actor, designation);
