@@ -8,6 +8,7 @@ import { telescope } from '../db/schema/network';
 import { person } from '../db/schema/people';
 import { report, slot } from '../db/schema/slots';
 import { region, type transient } from '../db/schema/transients';
+import { telescopeInWords } from './plainWords';
 
 export type RecordedAlert = {
 	streamName: string;
@@ -140,7 +141,7 @@ async function readReports(executor: Executor, transientId: string): Promise<Rec
 		observerText:
 			row.telescopeName === null
 				? `reported by ${[row.reporter, row.organisation].filter(Boolean).join(', ')}`
-				: `${row.telescopeName} ${row.apertureM} m`,
+				: telescopeInWords(row.telescopeName, row.apertureM),
 		filter: row.filter,
 		observedAt: row.observedAt,
 		exposureS: row.exposureS,
@@ -175,7 +176,7 @@ async function readNext(
 		)
 		.orderBy(asc(sql`lower(${slot.during})`));
 	return rows.map((row) => ({
-		telescopeText: `${row.name} ${row.apertureM} m`,
+		telescopeText: telescopeInWords(row.name, row.apertureM),
 		startAt: row.during.start,
 		endAt: row.during.end,
 		filter: row.filter

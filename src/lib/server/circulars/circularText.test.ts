@@ -2,7 +2,13 @@ import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import type { CircularRecord, RecordedReport } from './circularRecord';
 import { circularText } from './circularText';
-import { angleInWords, areaInWords, elapsedInWords, oddsInWords } from './plainWords';
+import {
+	angleInWords,
+	areaInWords,
+	elapsedInWords,
+	oddsInWords,
+	telescopeInWords
+} from './plainWords';
 import { wrapText } from './wrapText';
 
 const limit: RecordedReport = {
@@ -169,6 +175,10 @@ describe('plain words', () => {
 		[60 * 3_600_000, '2.5 d']
 	])('writes %i ms as %s', (ms, words) => {
 		expect(elapsedInWords(0, ms)).toBe(words);
+	});
+	it('names a telescope with its aperture once', () => {
+		expect(telescopeInWords('Cerro Almendra', 1.5)).toBe('Cerro Almendra 1.5 m');
+		expect(telescopeInWords('Cerro Almendra 1.5 m', 1.5)).toBe('Cerro Almendra 1.5 m');
 	});
 	it('turns odds round when they are against it, and keeps huge ones short', () => {
 		expect(oddsInWords(Math.log(14_000))).toBe('14 000 : 1');

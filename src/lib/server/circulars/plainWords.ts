@@ -46,6 +46,11 @@ export function oddsInWords(logOdds: number): string {
 	return logOdds >= 0 ? `${text} : 1` : `1 : ${text}`;
 }
 
+/** A telescope's name with its aperture, `Cerro Almendra 1.5 m`; once, where the name has it already. */
+export function telescopeInWords(name: string, apertureM: number | null): string {
+	return apertureM === null || /\d ?m$/.test(name) ? name : `${name} ${apertureM} m`;
+}
+
 /** What an alert says about the position, in one phrase. */
 export function shapeInWords(shape: Shape): string {
 	switch (shape.kind) {
