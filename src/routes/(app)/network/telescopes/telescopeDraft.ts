@@ -6,12 +6,12 @@ export type Box = string | number | null;
 export type HorizonDraft = { azDeg: Box; altDeg: Box };
 export type DetectorDraft = {
 	shape: 'rectangle' | 'circle';
-	widthDeg?: Box;
-	heightDeg?: Box;
-	rotationDeg?: Box;
-	radiusDeg?: Box;
-	offsetXDeg?: Box;
-	offsetYDeg?: Box;
+	widthDeg: Box;
+	heightDeg: Box;
+	rotationDeg: Box;
+	radiusDeg: Box;
+	offsetXDeg: Box;
+	offsetYDeg: Box;
 };
 export type DepthDraft = {
 	filter: Box;
@@ -60,6 +60,17 @@ export const BLANK_DEPTH: DepthDraft = {
 	darkSkyMag: ''
 };
 
+/** Holds the boxes of both shapes, so that the shape can be changed back and forth. */
+export const BLANK_DETECTOR: DetectorDraft = {
+	shape: 'rectangle',
+	widthDeg: '',
+	heightDeg: '',
+	rotationDeg: 0,
+	radiusDeg: '',
+	offsetXDeg: 0,
+	offsetYDeg: 0
+};
+
 /** A telescope nobody has described yet, with the usual limits filled in (common practice, no source). */
 export const NEW_TELESCOPE: TelescopeDraft = {
 	code: '',
@@ -80,7 +91,7 @@ export const NEW_TELESCOPE: TelescopeDraft = {
 		sunDistanceDeg: 45,
 		horizon: null
 	},
-	detectors: [{ shape: 'rectangle', rotationDeg: 0, offsetXDeg: 0, offsetYDeg: 0 }],
+	detectors: [{ ...BLANK_DETECTOR }],
 	depths: [{ ...BLANK_DEPTH, refExposureS: 60 }],
 	exposureS: 120,
 	overheadS: 20,
@@ -94,19 +105,23 @@ export function draftOf(
 	sent: Record<string, unknown> | undefined
 ): TelescopeDraft {
 	const base = structuredClone(stored) as TelescopeDraft;
-	if (!sent || !('limits' in sent)) return base;
-	const typed = sent as Partial<TelescopeDraft>;
+	const typed: Partial<TelescopeDraft> = sent && 'limits' in sent ? sent : {};
+	const isTyped = typed.limits !== undefined;
+	const { detectors, depths } = isTyped ? { detectors: [], depths: [], ...typed } : base;
 	return {
 		...base,
 		...typed,
-		limits: { ...base.limits, horizon: null, ...typed.limits },
-		observerIds: typed.observerIds ?? []
+		limits: isTyped ? { ...base.limits, horizon: null, ...typed.limits } : base.limits,
+		detectors: detectors.map((detector) => ({ ...BLANK_DETECTOR, ...detector })),
+		depths: depths.map((depth) => ({ ...BLANK_DEPTH, ...depth })),
+		// An unticked box is not sent at all.
+		observerIds: (isTyped ? typed.observerIds : base.observerIds) ?? []
 	};
 }
 
 /** A box's number, or null while it holds none. */
-export function numberIn(box: Box | undefined): number | null {
-	if (box === null || box === undefined || box === '') return null;
+export function numberIn(box: Box): number | null {
+	if (box === null || box === '') return null;
 	const value = Number(box);
 	return Number.isFinite(value) ? value : null;
 }
