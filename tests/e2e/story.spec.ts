@@ -165,7 +165,7 @@ test('from the first packet to the partner’s inbox', async ({ browser }) => {
 
 	// The circular reaches the partner's inbox.
 	await desk.goto(`/circulars/new?transient=${designation}`);
-	await expect(desk.getByLabel('Text')).toHaveValue(/19\.31/);
+	await expect(desk.getByRole('textbox', { name: 'Text' })).toHaveValue(/19\.31/);
 	await desk.getByRole('button', { name: 'Publish' }).click();
 	await expect(desk).toHaveURL(/\/circulars\/\d+$/);
 	const mail = await latestMail(PARTNER.email, designation);
