@@ -74,10 +74,10 @@ describe('a partner’s report', () => {
 	it('is possible on what has been shared only, which is all that partners can name', async () => {
 		const choices = await reportableTransients(world.app, partner);
 		expect(choices.map(({ designation }) => designation)).toEqual(['D26L01-a']);
-		const hidden = reportAsPartner(world.app, partner, limit({ designation: 'D26L01-b' }));
-		const absent = reportAsPartner(world.app, partner, limit({ designation: 'D26L01-z' }));
-		await expect(hidden).rejects.toMatchObject({ code: 'notFound' });
-		await expect(absent).rejects.toMatchObject({ code: 'notFound' });
+		const hidden = () => reportAsPartner(world.app, partner, limit({ designation: 'D26L01-b' }));
+		const absent = () => reportAsPartner(world.app, partner, limit({ designation: 'D26L01-z' }));
+		await expect(hidden()).rejects.toMatchObject({ code: 'notFound' });
+		await expect(absent()).rejects.toMatchObject({ code: 'notFound' });
 	});
 
 	it('may not lie in the future, nor come from another role', async () => {

@@ -1,7 +1,8 @@
 import { z } from 'zod';
 import { circularDetail } from '$lib/server/circulars/circularService';
 import { retryDelivery } from '$lib/server/circulars/deliveryLedgerService';
-import { loadPage, runAction } from '$lib/server/http/page';
+import { formAction } from '$lib/server/http/formAction';
+import { loadPage } from '$lib/server/http/page';
 import { parseInput } from '$lib/server/http/problem';
 import type { Actions, PageServerLoad } from './$types';
 
@@ -17,12 +18,10 @@ export const load: PageServerLoad = (event) =>
 const retrySchema = z.object({ deliveryId: z.uuid() });
 
 export const actions: Actions = {
-	retry: async ({ request, locals }) => {
-		const entered = Object.fromEntries(await request.formData());
-		return runAction(async () => {
-			const { deliveryId } = parseInput(retrySchema, entered);
-			await retryDelivery(locals.app, locals.actor, deliveryId);
+	retry: (event) =>
+		formAction(event, 'retryDelivery', async (input) => {
+			const { deliveryId } = parseInput(retrySchema, input);
+			await retryDelivery(event.locals.app, event.locals.actor, deliveryId);
 			return { retried: deliveryId };
-		});
-	}
+		})
 };

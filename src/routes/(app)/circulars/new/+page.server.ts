@@ -6,7 +6,8 @@ import {
 	publishableTransients,
 	publishCircular
 } from '$lib/server/circulars/circularService';
-import { loadPage, runAction } from '$lib/server/http/page';
+import { formAction } from '$lib/server/http/formAction';
+import { loadPage } from '$lib/server/http/page';
 import { parseInput } from '$lib/server/http/problem';
 import type { Actions, PageServerLoad } from './$types';
 
@@ -22,10 +23,10 @@ export const load: PageServerLoad = (event) =>
 	});
 
 export const actions: Actions = {
-	default: async ({ request, locals }) => {
-		const entered = Object.fromEntries(await request.formData()) as Record<string, string>;
-		const outcome = await runAction(async () =>
-			publishCircular(locals.app, locals.actor, parseInput(publishSchema, entered))
+	default: async (event) => {
+		const { app, actor } = event.locals;
+		const outcome = await formAction(event, 'writeCircular', (input) =>
+			publishCircular(app, actor, parseInput(publishSchema, input))
 		);
 		if ('number' in outcome) redirect(303, `/circulars/${outcome.number}`);
 		return outcome;

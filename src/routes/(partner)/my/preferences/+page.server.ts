@@ -1,5 +1,7 @@
 import { z } from 'zod';
 import { preferencesFormSchema } from '$lib/domain/preferences';
+import { requirePermission } from '$lib/server/actor';
+import { formAction } from '$lib/server/http/formAction';
 import { loadPage, runAction } from '$lib/server/http/page';
 import { parseInput } from '$lib/server/http/problem';
 import { removePushDevice, sendTestPush } from '$lib/server/notify/pushDeviceService';
@@ -12,31 +14,28 @@ export const load: PageServerLoad = (event) =>
 const deviceSchema = z.object({ deviceId: z.uuid() });
 
 export const actions: Actions = {
-	save: async ({ request, locals }) => {
-		const form = await request.formData();
-		return runAction(async () => {
+	save: (event) =>
+		runAction(async () => {
+			const { app, actor } = event.locals;
+			requirePermission(actor, 'setPreferences');
+			const form = await event.request.formData();
 			const preferences = parseInput(preferencesFormSchema, {
 				...Object.fromEntries(form),
 				streamCodes: form.getAll('streamCodes')
 			});
-			await savePreferences(locals.app, locals.actor, preferences);
+			await savePreferences(app, actor, preferences);
 			return { done: 'Saved.' };
-		});
-	},
-	remove: async ({ request, locals }) => {
-		const form = Object.fromEntries(await request.formData());
-		return runAction(async () => {
-			const { deviceId } = parseInput(deviceSchema, form);
-			await removePushDevice(locals.app, locals.actor, deviceId);
+		}),
+	remove: (event) =>
+		formAction(event, 'setPreferences', async (input) => {
+			const { deviceId } = parseInput(deviceSchema, input);
+			await removePushDevice(event.locals.app, event.locals.actor, deviceId);
 			return { done: 'The device was taken off the list.' };
-		});
-	},
-	test: async ({ request, locals }) => {
-		const form = Object.fromEntries(await request.formData());
-		return runAction(async () => {
-			const { deviceId } = parseInput(deviceSchema, form);
-			await sendTestPush(locals.app, locals.actor, deviceId);
+		}),
+	test: (event) =>
+		formAction(event, 'setPreferences', async (input) => {
+			const { deviceId } = parseInput(deviceSchema, input);
+			await sendTestPush(event.locals.app, event.locals.actor, deviceId);
 			return { done: 'Sent. It should appear on the device within seconds.' };
-		});
-	}
+		})
 };

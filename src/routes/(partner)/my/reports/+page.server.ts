@@ -1,6 +1,7 @@
 import { randomUUID } from 'node:crypto';
 import { partnerReportFormSchema } from '$lib/domain/partnerReport';
-import { loadPage, runAction } from '$lib/server/http/page';
+import { formAction } from '$lib/server/http/formAction';
+import { loadPage } from '$lib/server/http/page';
 import { parseInput } from '$lib/server/http/problem';
 import {
 	listOwnReports,
@@ -22,12 +23,10 @@ export const load: PageServerLoad = (event) =>
 	});
 
 export const actions: Actions = {
-	default: async ({ request, locals }) => {
-		const entered = Object.fromEntries(await request.formData());
-		return runAction(async () => {
-			const report = parseInput(partnerReportFormSchema, entered);
-			await reportAsPartner(locals.app, locals.actor, report);
+	default: (event) =>
+		formAction(event, 'reportAsPartner', async (input) => {
+			const report = parseInput(partnerReportFormSchema, input);
+			await reportAsPartner(event.locals.app, event.locals.actor, report);
 			return { reported: report.designation };
-		});
-	}
+		})
 };

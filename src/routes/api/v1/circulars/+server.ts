@@ -1,4 +1,5 @@
 import { circularFilterSchema, publishSchema } from '$lib/domain/circular';
+import { requirePermission } from '$lib/server/actor';
 import { listCirculars, publishCircular } from '$lib/server/circulars/circularService';
 import { answer, readJson } from '$lib/server/http/api';
 import { parseInput } from '$lib/server/http/problem';
@@ -8,6 +9,7 @@ import type { RequestHandler } from './$types';
 /** The archive, newest first; `?before=` gives the next page. */
 export const GET: RequestHandler = ({ locals, url }) =>
 	answer(async () => {
+		requirePermission(locals.actor, 'viewCirculars');
 		const { mine, ...filter } = parseInput(
 			circularFilterSchema,
 			Object.fromEntries(url.searchParams)
