@@ -33,9 +33,10 @@ export async function startStack(): Promise<Stack> {
 		throw new Error('There is no build: run `npm run build` first');
 	}
 	const directory = mkdtempSync(join(tmpdir(), 'duskline-e2e-'));
-	const stops: (() => Promise<void> | void)[] = [
-		() => rmSync(directory, { recursive: true, force: true })
-	];
+	const removeDirectory = () => rmSync(directory, { recursive: true, force: true });
+	// A run ended by a signal gets no tear-down.
+	process.once('exit', removeDirectory);
+	const stops: (() => Promise<void> | void)[] = [removeDirectory];
 	const stop = async () => {
 		for (const step of stops.reverse()) await step();
 	};
