@@ -58,7 +58,12 @@ test('the mailed link points at the configured origin, whatever the request’s 
 test('requests from another origin are refused', async ({ page, request }) => {
 	await signInAs(page, 'duty');
 	const { origin } = addresses();
-	for (const headers of [{}, { origin: 'https://evil.example' }, { origin: 'null' }]) {
+	const strangers: Record<string, string>[] = [
+		{},
+		{ origin: 'https://evil.example' },
+		{ origin: 'null' }
+	];
+	for (const headers of strangers) {
 		const form = await request.post('/auth/demo', { headers, form: { person: 'x' } });
 		expect(form.status()).toBe(403);
 		const json = await page.request.post('/api/v1/transients/D26L01-a/take', { headers, data: {} });

@@ -149,6 +149,8 @@ export type BoardTelescope = {
 	filters: string[];
 	exposureS: number;
 	detectors: Detector[];
+	/** Slots that hold it, for whichever transient, from now on. */
+	holds: (BoardSlot & { designation: string })[];
 	/** Closed by the site now. */
 	closed: { until: string; reason: string } | null;
 };

@@ -1,4 +1,9 @@
-import type { BoardOutlookRow, BoardSlot } from '../../domain/board';
+import type {
+	BoardOutlookRow,
+	BoardSlot,
+	BoardTelescope,
+	BoardTransient
+} from '../../domain/board';
 import { HOLDING_SLOT_STATES } from '../../domain/vocabulary';
 import { formatUtc } from '../format/formatTime';
 import { altitudeAt, stripSpanMs } from './stripGeometry';
@@ -20,6 +25,15 @@ export function heldSlots(
 				Date.parse(slot.startAt) < endMs
 		)
 		.sort((a, b) => a.startAt.localeCompare(b.startAt));
+}
+
+/** The transient's own slots, and those that hold the telescope for another transient. */
+export function slotsOnTelescope(
+	transient: Pick<BoardTransient, 'designation' | 'slots'>,
+	telescope: Pick<BoardTelescope, 'holds'> | undefined
+): BoardSlot[] {
+	const elsewhere = telescope?.holds.filter((hold) => hold.designation !== transient.designation);
+	return [...transient.slots, ...(elsewhere ?? [])];
 }
 
 /** A strip in words: when the target is usable and how high, and who has which time. */

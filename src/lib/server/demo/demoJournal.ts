@@ -2,7 +2,7 @@ import { sinceT0 } from '../../domain/duration';
 import { DECISION_LABELS } from '../../domain/vocabulary';
 import { reportSummary } from '../reports/reportService';
 import type { JournalEntry } from '../transients/journalStore';
-import { formatArea } from '../transients/regionService';
+import { formatArea } from '../../domain/area';
 import type { Chapter } from './demoHistory';
 import { DEMO_STREAMS } from './demoStreams';
 import type { ChapterIds } from './demoRows';

@@ -7,6 +7,7 @@ import { closure } from '../db/schema/network';
 import { boardRevision, transient } from '../db/schema/transients';
 import { telescopeSpecs } from '../outlook/telescopeSpecs';
 import { currentWatch } from '../rota/rotaService';
+import { holdingSlots } from '../slots/slotList';
 import { currentRevision } from '../db/boardRevisions';
 import { boardTransients } from './boardRows';
 
@@ -51,6 +52,7 @@ async function makeBoard(app: App): Promise<Board> {
 				.select()
 				.from(closure)
 				.where(sql`${closure.during} @> ${now.toISOString()}::timestamptz`);
+			const holds = await holdingSlots(tx, now);
 			const telescopes = rows.map((item): BoardTelescope => ({
 				code: item.code,
 				name: item.name,
@@ -63,6 +65,7 @@ async function makeBoard(app: App): Promise<Board> {
 				filters: item.depths.map((depth) => depth.filter),
 				exposureS: item.exposureS,
 				detectors: item.detectors,
+				holds: holds.filter((hold) => hold.telescopeCode === item.code),
 				closed: closedOf(closures, item.id)
 			}));
 			return {

@@ -1,5 +1,5 @@
 import type { StreamClass } from '../../domain/vocabulary';
-import { formatArea } from './regionService';
+import { formatArea } from '../../domain/area';
 
 const PART_WORDS: Record<StreamClass, [one: string, many: string]> = {
 	gamma: ['gamma circle', 'gamma circles'],

@@ -1,5 +1,6 @@
 import { and, desc, eq } from 'drizzle-orm';
 import { jointRegion, type JointRegion } from '../../sky/regions/jointRegion';
+import { formatArea } from '../../domain/area';
 import type { App } from '../app';
 import { liveParts } from '../alerts/alertStore';
 import { logOddsOfAgreement } from '../alerts/association';
@@ -84,14 +85,6 @@ function regionSummary(joint: JointRegion, before90Deg2: number | null): string 
 	if (joint.method === 'none') return `The alerts do not overlap; all of them are kept, ${area}`;
 	if (before90Deg2 === null) return `Joint region ${area} (90 %)`;
 	return `Joint region now ${area} (90 %), was ${formatArea(before90Deg2)}`;
-}
-
-/** An area with three significant digits in the unit that suits it. */
-export function formatArea(areaDeg2: number): string {
-	if (areaDeg2 >= 0.01) return `${Number(areaDeg2.toPrecision(3))} deg²`;
-	const arcmin2 = areaDeg2 * 3600;
-	if (arcmin2 >= 0.1) return `${Number(arcmin2.toPrecision(3))} arcmin²`;
-	return `${Number((arcmin2 * 3600).toPrecision(3))} arcsec²`;
 }
 
 async function closeWithoutAlerts(app: App, tx: Transaction, transientId: string): Promise<void> {
