@@ -32,7 +32,7 @@ const STEPS = {
 	takenS: { medianS: 160, ninetyPercentS: 665, most: 5 * 3600 },
 	decidedS: { medianS: 190, ninetyPercentS: 860, most: 3 * 3600 },
 	claimedS: { medianS: 242, ninetyPercentS: 2280, most: 4 * 3600 },
-	exposedS: { medianS: 260, ninetyPercentS: 6600, most: 8 * 3600 },
+	exposedS: { medianS: 260, ninetyPercentS: 5000, most: 8 * 3600 },
 	reportedS: { medianS: 2880, ninetyPercentS: 15_000, most: 12 * 3600 },
 	circularS: { medianS: 1020, ninetyPercentS: 5400, most: 10 * 3600 }
 };
@@ -41,8 +41,8 @@ const LEAST_REPORTED_S = 480;
 
 // prettier-ignore
 const FATES: [Fate | 'retracted', number][] = [
-	['whole', 32], ['uncirculated', 6], ['unreported', 2], ['lost', 3], ['unclaimed', 3],
-	['parked', 4], ['dropped', 6], ['undecided', 2], ['retracted', 2]
+	['whole', 37], ['uncirculated', 3], ['unreported', 2], ['lost', 2], ['unclaimed', 1],
+	['parked', 5], ['dropped', 6], ['undecided', 2], ['retracted', 2]
 ];
 const KIND_SHARES: [StoryKind, number][] = [
 	['gamma', 12],
@@ -59,10 +59,11 @@ export function playHistory(random: DemoRandom, nowMs: number): Chapter[] {
 	const fates = random.shuffled(FATES.flatMap(([fate, count]) => repeated(fate, count)));
 	const kinds = random.shuffled(KIND_SHARES.flatMap(([kind, count]) => repeated(kind, count)));
 	const count = fates.length;
+	const hardness = Array.from({ length: count }, random.normal);
 	const delays = Object.fromEntries(
 		Object.entries(STEPS).map(([step, spread]) => [
 			step,
-			lognormalDelays(random, count, spread).map((delayS) => Math.min(delayS, spread.most))
+			lognormalDelays(random, hardness, spread).map((delayS) => Math.min(delayS, spread.most))
 		])
 	) as Record<keyof typeof STEPS, number[]>;
 	const startMs = nowMs - HISTORY_DAYS * DAY_MS;

@@ -49,19 +49,26 @@ function normalQuantile(share: number): number {
 
 const NORMAL_QUANTILE_90 = 1.2816;
 
+/** How much of a wait is its own luck, next to how hard the whole case is. */
+const OWN_LUCK = 0.45;
+
 /**
- * `count` log-normal waiting times in seconds, in random order, evenly spread over their distribution,
- * so that a short history has the median and the 90 % point asked for.
+ * Log-normal waiting times in seconds, one for each case, evenly spread over their distribution, so that
+ * a short history has the median and the 90 % point asked for. `hardness` holds a standard normal deviate
+ * for each case: the hard ones take long at every step.
  */
 export function lognormalDelays(
 	random: DemoRandom,
-	count: number,
+	hardness: readonly number[],
 	{ medianS, ninetyPercentS }: { medianS: number; ninetyPercentS: number }
 ): number[] {
 	const sigma = Math.log(ninetyPercentS / medianS) / NORMAL_QUANTILE_90;
-	const delays = Array.from(
-		{ length: count },
-		(_, index) => medianS * Math.exp(sigma * normalQuantile((index + 0.5) / count))
-	);
-	return random.shuffled(delays);
+	const order = hardness
+		.map((hard, index) => ({ index, rank: hard + OWN_LUCK * random.normal() }))
+		.sort((a, b) => a.rank - b.rank);
+	const delays = new Array<number>(hardness.length);
+	order.forEach(({ index }, place) => {
+		delays[index] = medianS * Math.exp(sigma * normalQuantile((place + 0.5) / order.length));
+	});
+	return delays;
 }
