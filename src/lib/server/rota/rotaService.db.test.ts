@@ -3,6 +3,7 @@ import { NIGHT, openWorld, type World } from '../../../../tests/database/world';
 import { watchSchema } from '../../domain/watch';
 import type { Actor } from '../actor';
 import { parseInput } from '../http/problem';
+import { setDisabled } from '../people/peopleService';
 import { currentWatch, removeWatch, rotaAhead, saveWatch } from './rotaService';
 
 let world: World;
@@ -93,6 +94,18 @@ describe('the rota', () => {
 		await expect(saveWatch(world.app, ada, watch(60, 68))).rejects.toMatchObject({
 			code: 'notAllowed'
 		});
+	});
+
+	test('marks the watches of somebody who can’t serve any more', async () => {
+		await setDisabled(world.app, steward, ben.id, true);
+		const { entries, candidates } = await rotaAhead(world.app, ada, 1);
+		const serving = entries.flatMap((entry) =>
+			entry.kind === 'watch' ? [[entry.first.id === ben.id, entry.firstServes]] : []
+		);
+		expect(serving).toContainEqual([true, false]);
+		expect(serving).not.toContainEqual([false, false]);
+		expect(candidates.map(({ id }) => id)).toEqual([ada.id]);
+		await setDisabled(world.app, steward, ben.id, false);
 	});
 
 	test('a removed watch is gone, and removing it again says so', async () => {

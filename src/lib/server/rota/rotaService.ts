@@ -39,6 +39,7 @@ export type RotaEntry =
 			endAt: string;
 			first: PersonRef;
 			second: PersonRef | null;
+			firstServes: boolean;
 	  }
 	| { kind: 'gap'; startAt: string; endAt: string };
 
@@ -56,13 +57,14 @@ export async function rotaAhead(app: App, actor: Actor | null, days: number): Pr
 	const watches = await watchesBetween(app.database, new Date(startMs), new Date(endMs));
 	const covered = watches.map(({ during }) => ({ startMs: +during.start, endMs: +during.end }));
 	const entries: RotaEntry[] = [
-		...watches.map(({ id, during, first, second }) => ({
+		...watches.map(({ id, during, first, second, firstServes }) => ({
 			kind: 'watch' as const,
 			id,
 			startAt: during.start.toISOString(),
 			endAt: during.end.toISOString(),
 			first,
-			second
+			second,
+			firstServes
 		})),
 		...gapsIn({ startMs, endMs }, covered).map((gap) => ({
 			kind: 'gap' as const,

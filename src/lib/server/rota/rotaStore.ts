@@ -13,6 +13,8 @@ export type StoredWatch = {
 	during: TimeRange;
 	first: { id: string; name: string; initials: string };
 	second: { id: string; name: string; initials: string } | null;
+	/** False when the first was disabled or is no duty scientist any more. */
+	firstServes: boolean;
 };
 
 /** Watches that touch [start, end), in order. */
@@ -26,7 +28,8 @@ export async function watchesBetween(
 			id: watch.id,
 			during: watch.during,
 			first: { id: first.id, name: first.name, initials: first.initials },
-			second: { id: second.id, name: second.name, initials: second.initials }
+			second: { id: second.id, name: second.name, initials: second.initials },
+			firstServes: sql<boolean>`'duty' = any(${first.roles}) and ${first.disabledAt} is null`
 		})
 		.from(watch)
 		.innerJoin(first, eq(first.id, watch.firstPersonId))
