@@ -11,11 +11,13 @@ export function formNumber(low: number, high: number, unit = ''): z.ZodType<numb
 		.pipe(z.number(range).min(low, range).max(high, range));
 }
 
-const withoutZone = /^\d{4}-\d{2}-\d{2}T\d{2}:\d{2}(:\d{2})?$/;
+const withoutZone = /^\d{4}-\d{2}-\d{2}[T ]\d{2}:\d{2}(:\d{2})?$/;
 
 /** A UTC instant: as the API sends it, or as a date-and-time box gives it, without a zone. */
 export const formInstant = z
 	.string('A date and time is needed.')
 	.min(1, 'A date and time is needed.')
-	.transform((text) => (withoutZone.test(text) ? `${text.slice(0, 16)}:00Z` : text))
+	.transform((text) =>
+		withoutZone.test(text) ? `${text.slice(0, 16).replace(' ', 'T')}:00Z` : text
+	)
 	.pipe(instantSchema);

@@ -41,7 +41,7 @@ export const partnerReportSchema = z
 export type PartnerReport = z.output<typeof partnerReportSchema>;
 
 /**
- * The same as an HTML form sends it: its date box has no zone and means UTC, and what belongs to the
+ * The same as an HTML form sends it: its box for an instant has no zone and means UTC, and what belongs to the
  * other kind of report may be left over in a hidden box.
  */
 export const partnerReportFormSchema = z.preprocess((form) => {
@@ -52,8 +52,8 @@ export const partnerReportFormSchema = z.preprocess((form) => {
 	return {
 		...rest,
 		observedAt:
-			typeof observedAt === 'string' && /^[\d-]+T[\d:]+$/.test(observedAt)
-				? `${observedAt.length === 16 ? `${observedAt}:00` : observedAt}Z`
+			typeof observedAt === 'string' && /^[\d-]+[T ][\d:]+$/.test(observedAt)
+				? `${observedAt.replace(' ', 'T').slice(0, 16)}:00Z`
 				: observedAt,
 		...(rest.kind === 'detection' ? { magnitude, magnitudeError } : { limitMag })
 	};
