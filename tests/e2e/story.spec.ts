@@ -88,7 +88,9 @@ test('from the first packet to the partner’s inbox', async ({ browser }) => {
 	});
 	expect(first.status).toBe(201);
 	const designation = String(first.body.designation);
-	const listed = desk.getByRole('link', { name: new RegExp(designation) });
+	const listed = desk
+		.getByRole('region', { name: 'Open transients' })
+		.getByRole('link', { name: new RegExp(designation) });
 	await expect(listed).toBeVisible();
 	await listed.click();
 	await expect(desk.getByRole('heading', { name: designation })).toBeVisible();
