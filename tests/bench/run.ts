@@ -1,7 +1,7 @@
 import { existsSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
 
-/** One figure: name as the issue calls it, value, unit. */
+/** One figure: its name, value and unit. */
 export type BenchRow = [name: string, value: number, unit: string];
 
 /** Modules of each suite; each exports an async function by default that returns its rows. */
