@@ -1,5 +1,5 @@
-import type { Equatorial } from '../../sky/angle';
-import { sexagesimal } from '../../sky/sexagesimal';
+import type { Equatorial } from '../sky/angle';
+import { sexagesimal } from '../sky/sexagesimal';
 
 /** Right ascension `05h33m36s` and declination `−08°12′00″`, with digits that suit the region's radius. */
 export function formatPosition(position: Equatorial, radiusDeg = 1): { ra: string; dec: string } {

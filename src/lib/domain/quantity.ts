@@ -1,6 +1,6 @@
-import { significant } from '../../domain/area';
+import { significant } from './area';
 
-export { formatArea } from '../../domain/area';
+export { formatArea } from './area';
 
 const SUPERSCRIPTS = '⁰¹²³⁴⁵⁶⁷⁸⁹';
 

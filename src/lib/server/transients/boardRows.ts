@@ -89,7 +89,9 @@ export async function boardTransients(
 					: null,
 			parts: own.flatMap(boardPart),
 			region: boardRegion(versions),
-			outlook: stored ? boardOutlook(stored.body, stored.regionVersion, telescopeOf) : null,
+			outlook: stored
+				? boardOutlook(stored.body, stored.regionVersion, fadeOf(own), telescopeOf)
+				: null,
 			slots: slots
 				.filter((item) => item.transientId === row.id)
 				.map((item) => boardSlot(item, personOf, telescopeOf)),
@@ -181,9 +183,18 @@ function rounded(value: number, decimals: number): number {
 	return Math.round(value * scale) / scale;
 }
 
+/** The fade of the stream with the earliest live alert, as the outlook takes it. */
+function fadeOf(
+	live: { alert: typeof alert.$inferSelect; stream: typeof stream.$inferSelect }[]
+): BoardOutlook['fade'] {
+	const first = [...live].sort((a, b) => +a.alert.t0 - +b.alert.t0)[0];
+	return first ? { ...first.stream.fade, streamName: first.stream.name } : null;
+}
+
 function boardOutlook(
 	body: Outlook,
 	regionVersion: number,
+	fade: BoardOutlook['fade'],
 	telescopeOf: (id: string) => TelescopeName | undefined
 ): BoardOutlook {
 	return {
@@ -191,6 +202,7 @@ function boardOutlook(
 		regionVersion,
 		networkCatch: body.networkCatch,
 		costOfWaitingPoints: body.costOfWaitingPoints,
+		fade,
 		order: body.networkOrder.flatMap((item) => telescopeOf(item.telescopeId)?.code ?? []),
 		rows: body.rows.flatMap((row) => {
 			const code = telescopeOf(row.telescopeId)?.code;
@@ -208,6 +220,11 @@ function boardOutlook(
 						endsBy: window.endsBy
 					})),
 					whyNot: row.forbidden ? whyNot(row.forbidden) : null,
+					forbidden: row.forbidden && {
+						limit: row.forbidden.limit,
+						missingDeg: row.forbidden.closestDeg,
+						at: row.forbidden.atMs === null ? null : new Date(row.forbidden.atMs).toISOString()
+					},
 					atOpening: row.atOpening,
 					tiles: row.plan.map((tile) => ({
 						centre: {

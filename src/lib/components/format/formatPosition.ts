@@ -1,0 +1,1 @@
+export { formatPosition, positionToPaste } from '../../domain/positionWords';

@@ -1,0 +1,8 @@
+export {
+	formatAngle,
+	formatArea,
+	formatChance,
+	formatOdds,
+	formatPoints,
+	formatShare
+} from '../../domain/quantity';
