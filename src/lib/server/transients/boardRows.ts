@@ -9,6 +9,7 @@ import type {
 	PersonRef
 } from '../../domain/board';
 import type { Outlook } from '../../sky/outlook/outlook';
+import { alertColumns, type AlertWithoutSky } from '../alerts/alertSky';
 import type { Executor } from '../db/database';
 import { alert, stream } from '../db/schema/alerts';
 import { telescope } from '../db/schema/network';
@@ -31,7 +32,7 @@ export async function boardTransients(
 	const ids = rows.map((row) => row.id);
 	// One after the other: on a transaction's single connection they can't overlap anyway.
 	const parts = await executor
-		.select({ alert, stream })
+		.select({ alert: alertColumns, stream })
 		.from(alert)
 		.innerJoin(stream, eq(stream.id, alert.streamId))
 		.where(and(inArray(alert.transientId, ids), eq(alert.live, true)))
@@ -156,7 +157,7 @@ function boardRegion([latest, before]: RegionVersion[]): BoardRegion | null {
 }
 
 function boardPart(item: {
-	alert: typeof alert.$inferSelect;
+	alert: AlertWithoutSky;
 	stream: typeof stream.$inferSelect;
 }): BoardPart[] {
 	if (!item.alert.shape) return [];
@@ -185,7 +186,7 @@ function rounded(value: number, decimals: number): number {
 
 /** The fade of the stream with the earliest live alert, as the outlook takes it. */
 function fadeOf(
-	live: { alert: typeof alert.$inferSelect; stream: typeof stream.$inferSelect }[]
+	live: { alert: AlertWithoutSky; stream: typeof stream.$inferSelect }[]
 ): BoardOutlook['fade'] {
 	const first = [...live].sort((a, b) => +a.alert.t0 - +b.alert.t0)[0];
 	return first ? { ...first.stream.fade, streamName: first.stream.name } : null;
