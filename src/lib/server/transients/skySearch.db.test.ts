@@ -6,6 +6,7 @@ import { GET } from '../../../routes/api/v1/transients/+server';
 import { coneMoc } from '../../sky/moc/coneMoc';
 import type { Actor } from '../actor';
 import type { AuthenticatedStream } from '../streams/streamKeyService';
+import { listTransients } from './transientList';
 import { alertsOverlapping, overlappingRows, touchingRows, transientsTouching } from './skySearch';
 
 let world: World;
@@ -98,6 +99,16 @@ describe('transients that touch a patch', () => {
 		await world.receive(gamma, { ...wide, ...better });
 		expect(await touching(304, 0, 0.1)).toEqual([]);
 		expect(await touching(300, 0, 0.1)).toEqual([receipt.designation]);
+	});
+	it('can be listed with the other filters', async () => {
+		const patch = { raDeg: 85.7, decDeg: -8.2, radiusDeg: 0.5 };
+		const listed = async (search: string) =>
+			(await listTransients(world.app, duty, { patch, search })).items.map(
+				(item) => item.designation
+			);
+		expect(await listed('')).toEqual([designation('orionAgain'), designation('orion')]);
+		expect(await listed(designation('orion'))).toEqual([designation('orion')]);
+		expect(await listed(designation('pole'))).toEqual([]);
 	});
 	it('are not shown to partners', async () => {
 		const partner = await world.person('partner');

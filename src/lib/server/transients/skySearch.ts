@@ -1,4 +1,4 @@
-import { and, desc, eq, ne, sql } from 'drizzle-orm';
+import { and, desc, eq, ne, sql, type SQL } from 'drizzle-orm';
 import type { OverlappingAlert, TouchingTransient } from '../../domain/skySearch';
 import { normaliseDeg, type Equatorial } from '../../sky/angle';
 import { coneMoc } from '../../sky/moc/coneMoc';
@@ -48,7 +48,6 @@ export async function transientsTouching(
 
 /** The search itself; awaiting it runs it. */
 export function touchingRows(executor: Executor, patch: MocRanges, credible: 50 | 90) {
-	const cells = skyRegionParameter(patch);
 	return executor
 		.select({
 			designation: transient.designation,
@@ -65,15 +64,30 @@ export function touchingRows(executor: Executor, patch: MocRanges, credible: 50 
 			transient,
 			and(eq(transient.id, region.transientId), eq(transient.regionVersion, region.version))
 		)
-		.where(
-			and(
-				// The half area lies in the 90 % one, whose index serves both.
-				sql`${region.moc90} && ${cells}`,
-				credible === 50 ? sql`${region.moc50} && ${cells}` : undefined
-			)
-		)
+		.where(touches(skyRegionParameter(patch), credible))
 		.orderBy(desc(transient.t0), desc(transient.designation))
 		.limit(MOST);
+}
+
+/** Ids of the transients that `transientsTouching` finds, all of them, for use in another query. */
+export function idsTouching(executor: Executor, { radiusDeg, ...patch }: Patch) {
+	const centre = { raDeg: normaliseDeg(patch.raDeg), decDeg: patch.decDeg };
+	return executor
+		.select({ id: region.transientId })
+		.from(region)
+		.innerJoin(
+			transient,
+			and(eq(transient.id, region.transientId), eq(transient.regionVersion, region.version))
+		)
+		.where(touches(skyRegionParameter(coneMoc(centre, radiusDeg)), patch.credible ?? 90));
+}
+
+/** The half area lies in the 90 % one, whose index serves both. */
+function touches(cells: SQL, credible: 50 | 90): SQL | undefined {
+	return and(
+		sql`${region.moc90} && ${cells}`,
+		credible === 50 ? sql`${region.moc50} && ${cells}` : undefined
+	);
 }
 
 /**
