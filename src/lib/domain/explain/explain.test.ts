@@ -255,14 +255,14 @@ describe('a telescope', () => {
 		expect(step(caught, 'Plan')).toContain(why);
 		expect(pointing).toBeUndefined();
 	});
-	it('that the site has closed throughout says so without a distance', () => {
+	it('that the site has closed says so without a distance', () => {
 		const closed = context('FAR');
 		const row = {
 			...closed.row,
 			forbidden: { limit: 'closure' as const, missingDeg: null, at: null }
 		};
 		const opens = explainRow({ ...closed, row }, 'never')[2];
-		expect(step(opens, 'Why not')).toBe('Forbidden by a closure by the site throughout.');
+		expect(step(opens, 'Why not')).toBe('Forbidden by a closure by the site.');
 	});
 });
 

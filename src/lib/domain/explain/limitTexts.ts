@@ -49,7 +49,7 @@ export function forbiddenText(
 ): string {
 	const value = telescope ? limitValue(limit, telescope) : null;
 	const name = `Forbidden by ${EDGES[limit]}${value === null ? '' : ` (${value})`}`;
-	if (missingDeg === null) return `${name} throughout.`;
+	if (missingDeg === null) return `${name}.`;
 	const when = at === null ? '' : `, at ${utcMinute(at)}`;
 	return `${name}. It comes within ${missingDeg.toFixed(1)}° of being allowed${when}.`;
 }

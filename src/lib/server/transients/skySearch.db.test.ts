@@ -51,6 +51,7 @@ describe('transients that touch a patch', () => {
 			designation('orion')
 		]);
 		expect(await touching(81, -8.2, 0.1)).toEqual([designation('orion')]);
+		expect(await touching(81, -8.2, 0)).toEqual([designation('orion')]);
 	});
 	it('are none where no region is near', async () => {
 		expect(await touching(200, -50, 5)).toEqual([]);
