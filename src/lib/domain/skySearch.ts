@@ -18,7 +18,7 @@ export const skySearchSchema = z.strictObject({
 	credible: z
 		.enum(['50', '90'], 'Must be 50 or 90.')
 		.default('90')
-		.transform((text) => (text === '50' ? 50 : 90))
+		.transform((text): 50 | 90 => (text === '50' ? 50 : 90))
 });
 
 /** A transient whose joint region touches the patch asked for. */
