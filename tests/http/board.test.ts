@@ -5,7 +5,7 @@ import type { Actor } from '../../src/lib/server/actor';
 import { followRevisions } from '../../src/lib/server/db/boardRevisions';
 import { takeTransient } from '../../src/lib/server/transients/transientService';
 import { GET } from '../../src/routes/api/v1/board/+server';
-import { circlePacket, openWorld, type World } from '../database/world';
+import { circle, circlePacket, openWorld, type World } from '../database/world';
 import { routeEvent } from './callRoute';
 
 let world: World;
@@ -66,5 +66,36 @@ describe('GET /api/v1/board', () => {
 			const board = (await (await get(query)).json()) as Board;
 			expect(board.transients).toHaveLength(1);
 		}
+	});
+});
+
+describe('the board’s outlook', () => {
+	it('carries what its numbers are explained by: fade, limits, depth and what is missing', async () => {
+		await world.telescope('ALM');
+		await world.telescope('FAR', [], { latDeg: 82 });
+		const gamma = await world.stream('carapace', 'wideXray');
+		const { receipt } = await world.receive(
+			gamma,
+			circlePacket({ packetId: 'later', t0: '2026-12-01T04:00:00Z', shape: circle(60, -10, 1) })
+		);
+		await world.runJobs();
+		const board = (await (await get()).json()) as Board;
+		const shown = board.transients.find((item) => item.designation === receipt.designation);
+		expect(shown?.outlook?.fade).toEqual({
+			m1Mean: 22.2,
+			m1Spread: 2.3,
+			alpha: 1,
+			streamName: 'Carapace'
+		});
+		const row = (code: string) =>
+			shown?.outlook?.rows.find(({ telescopeCode }) => telescopeCode === code);
+		expect(row('ALM')).toMatchObject({ whyNot: null, forbidden: null });
+		// At 82° N a declination of −10° culminates at −2°, 27° short of the limit of 25°.
+		expect(row('FAR')?.forbidden?.limit).toBe('altitude');
+		expect(row('FAR')?.forbidden?.missingDeg).toBeCloseTo(27, 0);
+		expect(row('FAR')?.whyNot).toMatch(/^never high enough, at best 2[67]\.\d° too low at/);
+		const telescope = board.telescopes.find(({ code }) => code === 'ALM');
+		expect(telescope?.limits).toMatchObject({ sunAltMaxDeg: -12, hasHorizon: false });
+		expect(telescope?.depth).toMatchObject({ filter: 'R', refLimitMag: 21 });
 	});
 });

@@ -68,6 +68,7 @@ export const ROUTE_GUARDS: Record<string, Guard> = {
 
 	'/api/v1/alerts/+server.ts › POST': 'key',
 	'/api/v1/alerts/[id=uuid]/membership/+server.ts › POST': 'regroupAlerts',
+	'/api/v1/alerts/[id=uuid]/overlapping/+server.ts › GET': 'viewTransients',
 	'/api/v1/board/+server.ts › GET': 'viewBoard',
 	'/api/v1/circulars/+server.ts › GET': 'viewCirculars',
 	'/api/v1/circulars/+server.ts › POST': 'writeCircular',
@@ -85,6 +86,7 @@ export const ROUTE_GUARDS: Record<string, Guard> = {
 	'/api/v1/slots/[id=uuid]/on-sky/+server.ts › POST': 'claimSlot',
 	'/api/v1/slots/[id=uuid]/release/+server.ts › POST': 'releaseSlot',
 	'/api/v1/slots/[id=uuid]/report/+server.ts › POST': 'reportSlot',
+	'/api/v1/transients/+server.ts › GET': 'viewTransients',
 	'/api/v1/transients/[designation=designation]/decision/+server.ts › POST': 'decideTransient',
 	'/api/v1/transients/[designation=designation]/merge/+server.ts › POST': 'regroupAlerts',
 	'/api/v1/transients/[designation=designation]/take/+server.ts › POST': 'takeTransient'

@@ -1,8 +1,8 @@
 import type { Equatorial } from '../sky/angle';
-import type { Strip } from '../sky/outlook/outlook';
+import type { FadeModel, Strip } from '../sky/outlook/outlook';
 import type { JointRegion } from '../sky/regions/jointRegion';
 import type { Shape } from '../sky/regions/shape';
-import type { Detector, LimitName } from '../sky/visibility/telescope';
+import type { Depth, Detector, LimitName, TelescopeLimits } from '../sky/visibility/telescope';
 import type {
 	Decision,
 	Membership,
@@ -67,6 +67,8 @@ export type BoardOutlookRow = {
 	windows: BoardWindow[];
 	/** In words, why it can't observe; null when it can. */
 	whyNot: string | null;
+	/** The same in numbers: the limit, the degrees that are missing at best, and when that is. */
+	forbidden: { limit: LimitName; missingDeg: number | null; at: string | null } | null;
 	atOpening: {
 		altDeg: number;
 		azDeg: number;
@@ -86,6 +88,8 @@ export type BoardOutlook = {
 	regionVersion: number;
 	networkCatch: number;
 	costOfWaitingPoints: number;
+	/** The fade assumed, and the stream whose class it comes from; null without a live alert. */
+	fade: (FadeModel & { streamName: string }) | null;
 	/** Telescope codes in the order that adds most catch. */
 	order: string[];
 	rows: BoardOutlookRow[];
@@ -148,6 +152,13 @@ export type BoardTelescope = {
 	sunDistanceDeg: number;
 	filters: string[];
 	exposureS: number;
+	/** The limits besides `minAltDeg` and `sunDistanceDeg`; of a horizon mask only that there is one. */
+	limits: Omit<TelescopeLimits, 'minAltDeg' | 'sunDistanceDeg' | 'horizon'> & {
+		hasHorizon: boolean;
+	};
+	/** Of the filter that the outlook assumes. */
+	depth: Depth;
+	overheadS: number;
 	detectors: Detector[];
 	/** Slots that hold it, for whichever transient, from now on. */
 	holds: (BoardSlot & { designation: string })[];

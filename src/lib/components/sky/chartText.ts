@@ -1,25 +1,9 @@
 import type { BoardTransient } from '../../domain/board';
-import type { Shape } from '../../sky/regions/shape';
+import { shapeText } from '../../domain/shapeWords';
 import { formatPosition } from '../format/formatPosition';
-import { formatAngle, formatArea } from '../format/formatQuantity';
+import { formatArea } from '../format/formatQuantity';
 
-/** A shape in words: `circle of radius 3.1°`. */
-export function shapeText(shape: Shape): string {
-	switch (shape.kind) {
-		case 'circle':
-			return `circle of radius ${formatAngle(shape.radiusDeg)} (${Math.round(shape.containment * 100)} %)`;
-		case 'hardCircle':
-			return `circle of radius ${formatAngle(shape.radiusDeg)}`;
-		case 'ellipse':
-			return `ellipse of ${formatAngle(shape.semiMajorDeg)} by ${formatAngle(shape.semiMinorDeg)} (${Math.round(shape.containment * 100)} %)`;
-		case 'annulus':
-			return `ring of radius ${formatAngle(shape.radiusDeg)}, ${formatAngle(shape.halfWidthDeg)} to either side`;
-		case 'polygon':
-			return `outline with ${shape.vertices.length} corners`;
-		case 'map':
-			return 'probability map';
-	}
-}
+export { shapeText } from '../../domain/shapeWords';
 
 /** The sky chart in words. */
 export function chartText({ designation, parts, region }: BoardTransient): string {

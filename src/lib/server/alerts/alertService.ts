@@ -13,6 +13,7 @@ import { writeJournal } from '../transients/journalStore';
 import { deriveRegion } from '../transients/regionService';
 import type { AuthenticatedStream } from '../streams/streamKeyService';
 import { findPacket, lockTriage, withdrawAlerts, type AlertRow } from './alertStore';
+import { alertSky } from './alertSky';
 import { placeAlert, type Placement } from './association';
 
 /** What the sender is told: the same for the first packet and for every copy of it. */
@@ -83,6 +84,7 @@ export async function receiveAlert(
 				t0,
 				receivedAt,
 				shape: packet.shape ?? null,
+				moc90: alertSky(packet.shape ?? null),
 				significance: packet.significance ?? null,
 				falseAlarmPerYear: packet.falseAlarmPerYear ?? null,
 				remarks: packet.remarks,

@@ -20,12 +20,13 @@ export function whyNot({ limit, closestDeg, atMs }: Forbidden): string {
 	const phrase = LIMIT_PHRASES[limit];
 	if (closestDeg === null) return phrase;
 	const at = atMs === null ? '' : ` at ${new Date(atMs).toISOString().slice(11, 16)} UTC`;
+	const missing = `${closestDeg.toFixed(1)}°`;
 	const short: Partial<Record<LimitName, string>> = {
-		sun: `the Sun is never low enough, ${closestDeg.toFixed(1)}°${at} at best`,
-		altitude: `never high enough, ${closestDeg.toFixed(1)}°${at} at best`,
-		horizon: `never clear of the local horizon, ${closestDeg.toFixed(1)}°${at} at best`,
-		moon: `too close to the Moon, ${closestDeg.toFixed(1)}°${at} at best`,
-		sunDistance: `too close to the Sun, ${closestDeg.toFixed(1)}°${at} at best`
+		sun: `the Sun is never low enough, at best ${missing} too high${at}`,
+		altitude: `never high enough, at best ${missing} too low${at}`,
+		horizon: `never clear of the local horizon, at best ${missing} below it${at}`,
+		moon: `too close to the Moon, at best by ${missing}${at}`,
+		sunDistance: `too close to the Sun, at best by ${missing}${at}`
 	};
 	return short[limit] ?? phrase;
 }

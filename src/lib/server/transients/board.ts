@@ -1,5 +1,6 @@
 import { eq, sql } from 'drizzle-orm';
 import type { Board, BoardTelescope, BoardTransient } from '../../domain/board';
+import type { TelescopeLimits } from '../../sky/visibility/telescope';
 import { requirePermission, type Actor } from '../actor';
 import type { App } from '../app';
 import type { Database } from '../db/database';
@@ -64,6 +65,10 @@ async function makeBoard(app: App): Promise<Board> {
 				sunDistanceDeg: item.limits.sunDistanceDeg,
 				filters: item.depths.map((depth) => depth.filter),
 				exposureS: item.exposureS,
+				limits: boardLimits(item.limits),
+				// telescopeSpecs refuses a telescope without a filter.
+				depth: item.depths[0]!,
+				overheadS: item.overheadS,
 				detectors: item.detectors,
 				holds: holds.filter((hold) => hold.telescopeCode === item.code),
 				closed: closedOf(closures, item.id)
@@ -91,6 +96,26 @@ export function byCostOfWaiting(a: BoardTransient, b: BoardTransient): number {
 		cost(b) - cost(a) ||
 		b.t0.localeCompare(a.t0)
 	);
+}
+
+function boardLimits({
+	sunAltMaxDeg,
+	maxAltDeg,
+	hourAngleMaxH,
+	decMinDeg,
+	decMaxDeg,
+	moonDistanceDeg,
+	horizon
+}: TelescopeLimits): BoardTelescope['limits'] {
+	return {
+		sunAltMaxDeg,
+		maxAltDeg,
+		hourAngleMaxH,
+		decMinDeg,
+		decMaxDeg,
+		moonDistanceDeg,
+		hasHorizon: horizon !== null
+	};
 }
 
 function closedOf(

@@ -9,6 +9,7 @@ import type {
 	PersonRef
 } from '../../domain/board';
 import type { Outlook } from '../../sky/outlook/outlook';
+import { alertColumns, type AlertWithoutSky } from '../alerts/alertSky';
 import type { Executor } from '../db/database';
 import { alert, stream } from '../db/schema/alerts';
 import { telescope } from '../db/schema/network';
@@ -31,7 +32,7 @@ export async function boardTransients(
 	const ids = rows.map((row) => row.id);
 	// One after the other: on a transaction's single connection they can't overlap anyway.
 	const parts = await executor
-		.select({ alert, stream })
+		.select({ alert: alertColumns, stream })
 		.from(alert)
 		.innerJoin(stream, eq(stream.id, alert.streamId))
 		.where(and(inArray(alert.transientId, ids), eq(alert.live, true)))
@@ -89,7 +90,9 @@ export async function boardTransients(
 					: null,
 			parts: own.flatMap(boardPart),
 			region: boardRegion(versions),
-			outlook: stored ? boardOutlook(stored.body, stored.regionVersion, telescopeOf) : null,
+			outlook: stored
+				? boardOutlook(stored.body, stored.regionVersion, fadeOf(own), telescopeOf)
+				: null,
 			slots: slots
 				.filter((item) => item.transientId === row.id)
 				.map((item) => boardSlot(item, personOf, telescopeOf)),
@@ -154,7 +157,7 @@ function boardRegion([latest, before]: RegionVersion[]): BoardRegion | null {
 }
 
 function boardPart(item: {
-	alert: typeof alert.$inferSelect;
+	alert: AlertWithoutSky;
 	stream: typeof stream.$inferSelect;
 }): BoardPart[] {
 	if (!item.alert.shape) return [];
@@ -181,9 +184,18 @@ function rounded(value: number, decimals: number): number {
 	return Math.round(value * scale) / scale;
 }
 
+/** The fade of the stream with the earliest live alert, as the outlook takes it. */
+function fadeOf(
+	live: { alert: AlertWithoutSky; stream: typeof stream.$inferSelect }[]
+): BoardOutlook['fade'] {
+	const first = [...live].sort((a, b) => +a.alert.t0 - +b.alert.t0)[0];
+	return first ? { ...first.stream.fade, streamName: first.stream.name } : null;
+}
+
 function boardOutlook(
 	body: Outlook,
 	regionVersion: number,
+	fade: BoardOutlook['fade'],
 	telescopeOf: (id: string) => TelescopeName | undefined
 ): BoardOutlook {
 	return {
@@ -191,6 +203,7 @@ function boardOutlook(
 		regionVersion,
 		networkCatch: body.networkCatch,
 		costOfWaitingPoints: body.costOfWaitingPoints,
+		fade,
 		order: body.networkOrder.flatMap((item) => telescopeOf(item.telescopeId)?.code ?? []),
 		rows: body.rows.flatMap((row) => {
 			const code = telescopeOf(row.telescopeId)?.code;
@@ -208,6 +221,11 @@ function boardOutlook(
 						endsBy: window.endsBy
 					})),
 					whyNot: row.forbidden ? whyNot(row.forbidden) : null,
+					forbidden: row.forbidden && {
+						limit: row.forbidden.limit,
+						missingDeg: row.forbidden.closestDeg,
+						at: row.forbidden.atMs === null ? null : new Date(row.forbidden.atMs).toISOString()
+					},
 					atOpening: row.atOpening,
 					tiles: row.plan.map((tile) => ({
 						centre: {

@@ -5,6 +5,7 @@ import type { Equatorial } from '../../sky/angle';
 import type { Shape } from '../../sky/regions/shape';
 import type { JointRegion } from '../../sky/regions/jointRegion';
 import { requirePermission, type Actor } from '../actor';
+import { alertColumns } from '../alerts/alertSky';
 import type { App } from '../app';
 import { alert, packet, stream } from '../db/schema/alerts';
 import { circular } from '../db/schema/circulars';
@@ -81,7 +82,7 @@ export async function transientDetail(
 		.where(eq(region.transientId, row.id))
 		.orderBy(asc(region.version));
 	const alerts = await database
-		.select({ alert, stream, packet })
+		.select({ alert: alertColumns, stream, packet })
 		.from(alert)
 		.innerJoin(stream, eq(stream.id, alert.streamId))
 		.innerJoin(packet, eq(packet.id, alert.rawId))

@@ -6,6 +6,7 @@ import { alert, stream } from '../db/schema/alerts';
 import { person } from '../db/schema/people';
 import { report } from '../db/schema/slots';
 import { region, transient } from '../db/schema/transients';
+import { idsTouching, type Patch } from './skySearch';
 
 export type TransientListItem = {
 	designation: string;
@@ -25,6 +26,8 @@ export type TransientListQuery = {
 	search?: string;
 	state?: TransientState;
 	decision?: Decision;
+	/** Only those whose joint region touches this patch of the sky. */
+	patch?: Patch;
 	/** Only T0 before this instant: the next page. */
 	before?: Date;
 	limit?: number;
@@ -50,6 +53,7 @@ export async function listTransients(
 					: undefined,
 				query.state ? eq(transient.state, query.state) : undefined,
 				query.decision ? eq(transient.decision, query.decision) : undefined,
+				query.patch ? inArray(transient.id, idsTouching(database, query.patch)) : undefined,
 				query.before ? lt(transient.t0, query.before) : undefined
 			)
 		)

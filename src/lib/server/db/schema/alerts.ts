@@ -1,3 +1,4 @@
+import { sql } from 'drizzle-orm';
 import {
 	bigint,
 	bigserial,
@@ -20,7 +21,7 @@ import type {
 } from '../../../domain/vocabulary';
 import type { Shape } from '../../../sky/regions/shape';
 import type { FadeModel } from '../../../sky/outlook/outlook';
-import { bytes, instant } from '../columns';
+import { bytes, instant, skyRegion } from '../columns';
 import { person } from './people';
 import { transient } from './transients';
 
@@ -116,6 +117,8 @@ export const alert = pgTable(
 		receivedAt: instant('received_at').notNull(),
 		/** Null for a retraction. */
 		shape: jsonb('shape').$type<Shape>(),
+		/** The shape's own 90 % area, a little larger, for searches; null where it is not worked out (circles are). */
+		moc90: skyRegion('moc90'),
 		significance: doublePrecision('significance'),
 		falseAlarmPerYear: doublePrecision('false_alarm_per_year'),
 		remarks: text('remarks').notNull().default(''),
@@ -131,6 +134,7 @@ export const alert = pgTable(
 	(table) => [
 		unique('alert_stream_packet_serial').on(table.streamId, table.packetId, table.serial),
 		index('alert_transient').on(table.transientId),
-		index('alert_t0').on(table.t0)
+		index('alert_t0').on(table.t0),
+		index('alert_moc90').using('gist', sql`${table.moc90} multirange_ops`)
 	]
 );
