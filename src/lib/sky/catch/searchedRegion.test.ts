@@ -23,7 +23,7 @@ const circle = (centre: Equatorial, radiusDeg: number): Shape => ({
 	containment: 0.9
 });
 
-const square = (sideDeg: number): Detector => ({
+const square = (sideDeg: number): Extract<Detector, { shape: 'rectangle' }> => ({
 	shape: 'rectangle',
 	widthDeg: sideDeg,
 	heightDeg: sideDeg,
