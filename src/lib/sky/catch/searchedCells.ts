@@ -1,37 +1,24 @@
-import {
-	cellAreaSr,
-	cellPoint,
-	cellRadiusRad,
-	cellVector,
-	CELL_ORDER_MAX
-} from '../healpix/healpix';
+import { cellAreaSr, cellRadiusRad, cellVector, CELL_ORDER_MAX } from '../healpix/healpix';
 import type { Density } from '../regions/density/density';
 import type { MeshCell } from '../regions/mesh';
 import { tileContains, type TileAxes } from '../tiling/field';
-import type { Vector } from '../vector';
 import { footprintSide } from './footprintSide';
 import { verdictOf, type Look, type Verdict } from './looks';
 
-/** Cells on a footprint's edge with more probability than this are split: at most 50,000 share all of it. */
-const EDGE_PROBABILITY = 2e-5;
-/** An edge cell that is not split is judged at this many places squared. */
-const SAMPLES_PER_SIDE = 4;
+/** Cells on a footprint's edge with more probability than this are split in four: at most 10,000 share all of it. */
+const EDGE_PROBABILITY = 1e-4;
+/** Other cells on an edge are divided once more, this many orders down, and each piece judged at its centre. */
+const LAST_ORDERS = 2;
 
-/** A cell with its prior density and the mean verdict over it. */
-export type SearchedCell = MeshCell & {
-	survival: number;
-	/** Mean over the whole cell of the chance of being fainter than every limit, 0 where nobody looked. */
-	fainter: number;
-	/** Share of the cell where nobody looked. */
-	elsewhere: number;
-};
+/** A cell with its prior density and what was seen of it. */
+export type SearchedCell = MeshCell & Verdict;
 
 /** Which looks surely cover a cell, and which tiles of the others have an edge in it. */
 type Coverage = { covering: Set<Look>; open: { look: Look; tile: TileAxes }[] };
 
 /**
  * Cells of a normalised mesh, split along the edges of footprints, with what was seen of each. Every cell's
- * children share its probability as `densities` say. Edges are good to 0.1 % of the probability.
+ * children share its probability as `densities` say.
  */
 export function searchedCells(
 	cells: readonly MeshCell[],
@@ -46,13 +33,13 @@ export function searchedCells(
 	const visit = (cell: MeshCell, inherited: Coverage) => {
 		const coverage = narrowed(cell, inherited);
 		if (coverage.open.length === 0) {
-			done.push({ ...cell, ...shares([verdictWhere(looks, coverage)]) });
+			done.push({ ...cell, ...verdictOf(looks.filter((look) => coverage.covering.has(look))) });
 		} else if (
 			cell.order < CELL_ORDER_MAX &&
 			cell.density * cellAreaSr(cell.order) > EDGE_PROBABILITY
 		) {
 			for (const child of childrenOf(cell, densities)) visit(child, coverage);
-		} else done.push({ ...cell, ...shares(sampled(cell, looks, coverage)) });
+		} else for (const piece of divided(cell, looks, coverage)) done.push(piece);
 	};
 	for (const cell of cells) visit(cell, all);
 	return done;
@@ -72,38 +59,40 @@ function narrowed(cell: MeshCell, { covering, open }: Coverage): Coverage {
 	return { covering: inside, open: crossing.filter(({ look }) => !inside.has(look)) };
 }
 
-/** The verdict at one place of a cell, or of all of it where no edge crosses it. */
-function verdictWhere(looks: readonly Look[], { covering, open }: Coverage, at?: Vector): Verdict {
-	return verdictOf(
-		looks.filter(
-			(look) =>
-				covering.has(look) ||
-				(at !== undefined &&
-					open.some(
-						(item) => item.look === look && tileContains(look.field, item.tile, at.x, at.y, at.z)
-					))
-		)
+/** A cell with an edge in it as small pieces of its own density, or whole where the edge misses all their centres. */
+function divided(
+	cell: MeshCell,
+	looks: readonly Look[],
+	{ covering, open }: Coverage
+): SearchedCell[] {
+	// Most looks are nowhere near the cell: they are left out once, not for each piece.
+	const near = looks
+		.map((look) => ({
+			look,
+			covers: covering.has(look),
+			tiles: open.filter((item) => item.look === look).map(({ tile }) => tile)
+		}))
+		.filter(({ covers, tiles }) => covers || tiles.length > 0);
+	const order = Math.min(CELL_ORDER_MAX, cell.order + LAST_ORDERS);
+	const count = 4 ** (order - cell.order);
+	const pieces = Array.from({ length: count }, (_, i): SearchedCell => {
+		const pixel = cell.pixel * count + i;
+		const at = cellVector(order, pixel);
+		const here = near.filter(
+			({ look, covers, tiles }) =>
+				covers || tiles.some((tile) => tileContains(look.field, tile, at.x, at.y, at.z))
+		);
+		const verdict = verdictOf(here.map(({ look }) => look));
+		return { order, pixel, at, density: cell.density, ...verdict };
+	});
+	const [first] = pieces;
+	const alike = pieces.every(
+		({ survival, fainter, looked }) =>
+			survival === first?.survival && fainter === first.fainter && looked === first.looked
 	);
-}
-
-function sampled(cell: MeshCell, looks: readonly Look[], coverage: Coverage): Verdict[] {
-	const verdicts: Verdict[] = [];
-	for (let i = 0; i < SAMPLES_PER_SIDE * SAMPLES_PER_SIDE; i++) {
-		const u = ((i % SAMPLES_PER_SIDE) + 0.5) / SAMPLES_PER_SIDE;
-		const v = (Math.floor(i / SAMPLES_PER_SIDE) + 0.5) / SAMPLES_PER_SIDE;
-		verdicts.push(verdictWhere(looks, coverage, cellPoint(cell.order, cell.pixel, u, v)));
-	}
-	return verdicts;
-}
-
-function shares(verdicts: Verdict[]): Pick<SearchedCell, 'survival' | 'fainter' | 'elsewhere'> {
-	const mean = (value: (verdict: Verdict) => number) =>
-		verdicts.reduce((sum, verdict) => sum + value(verdict), 0) / verdicts.length;
-	return {
-		survival: mean(({ survival }) => survival),
-		fainter: mean(({ looked, fainter }) => (looked ? fainter : 0)),
-		elsewhere: mean(({ looked }) => (looked ? 0 : 1))
-	};
+	if (!alike || !first) return pieces;
+	const { survival, fainter, looked } = first;
+	return [{ ...cell, survival, fainter, looked }];
 }
 
 /** The four children, their densities in the proportion that `densities` give, their mean the parent's. */

@@ -104,8 +104,8 @@ function tallyOf(cells: SearchedCell[]): Tally {
 	for (const cell of cells) {
 		const probability = cell.density * cellAreaSr(cell.order);
 		tally.nothing += probability * cell.survival;
-		tally.tooFaint += probability * cell.fainter;
-		tally.elsewhere += probability * cell.elsewhere;
+		if (cell.looked) tally.tooFaint += probability * cell.fainter;
+		else tally.elsewhere += probability;
 	}
 	return tally;
 }
