@@ -1,6 +1,8 @@
 // Entry of the compute threads (built by vite.workers.config.ts, run by outlook/computePool.ts).
+import { searchedRegion, type SearchedRegion } from './lib/sky/catch/searchedRegion';
+import type { NotFound } from './lib/sky/catch/looks';
 import { computeOutlook } from './lib/sky/outlook/computeOutlook';
-import type { Outlook, OutlookInput } from './lib/sky/outlook/outlook';
+import type { FadeModel, Outlook, OutlookInput } from './lib/sky/outlook/outlook';
 import { jointRegion } from './lib/sky/regions/jointRegion';
 import type { JointRegion } from './lib/sky/regions/jointRegion';
 import type { Shape } from './lib/sky/regions/shape';
@@ -11,4 +13,13 @@ export function outlook(input: OutlookInput): Outlook {
 
 export function joint(parts: Shape[]): JointRegion {
 	return jointRegion(parts);
+}
+
+export function searched(input: {
+	shapes: Shape[];
+	reports: NotFound[];
+	t0Ms: number;
+	fade: FadeModel;
+}): SearchedRegion {
+	return searchedRegion(input.shapes, input.reports, input.t0Ms, input.fade);
 }

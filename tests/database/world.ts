@@ -11,6 +11,7 @@ import type { AuthenticatedStream } from '../../src/lib/server/streams/streamKey
 import { alertPacketSchema } from '../../src/lib/domain/alertPacket';
 import type { Role, StreamClass } from '../../src/lib/domain/vocabulary';
 import { computeOutlook } from '../../src/lib/sky/outlook/computeOutlook';
+import { searchedRegion } from '../../src/lib/sky/catch/searchedRegion';
 import { jointRegion } from '../../src/lib/sky/regions/jointRegion';
 import { createTestDatabase } from './testDatabase';
 
@@ -45,6 +46,8 @@ export async function openWorld(start = NIGHT) {
 		compute: {
 			outlook: (input) => Promise.resolve(computeOutlook(structuredClone(input))),
 			jointRegion: (parts) => Promise.resolve(jointRegion(parts)),
+			searchedRegion: ({ shapes, reports, t0Ms, fade }) =>
+				Promise.resolve(searchedRegion(shapes, reports, t0Ms, fade)),
 			close: () => Promise.resolve()
 		},
 		now: () => new Date(nowMs)

@@ -81,6 +81,7 @@ export const ROUTE_GUARDS: Record<string, Guard> = {
 	'/api/v1/push-devices/[id=uuid]/test/+server.ts › POST': 'setPreferences',
 	'/api/v1/push-devices/key/+server.ts › GET': 'setPreferences',
 	'/api/v1/response/+server.ts › GET': 'viewResponse',
+	'/api/v1/reports/[id=uuid]/withdraw/+server.ts › POST': 'withdrawReport',
 	'/api/v1/slots/+server.ts › GET': 'viewSlots',
 	'/api/v1/slots/+server.ts › POST': 'claimSlot',
 	'/api/v1/slots/[id=uuid]/on-sky/+server.ts › POST': 'claimSlot',

@@ -24,3 +24,8 @@ export function reportSlot(
 ): Promise<unknown> {
 	return postJson(`${path(id)}/report`, report);
 }
+
+/** Takes a report back; its maker or a steward may. */
+export function withdrawReport(id: string, reason: string): Promise<unknown> {
+	return postJson(`/api/v1/reports/${encodeURIComponent(id)}/withdraw`, { reason });
+}

@@ -41,6 +41,8 @@ export type BoardRegion = {
 	logOddsAgreement: number | null;
 	/** 90 % area of the version before this one; null for the first. */
 	before: { area90Deg2: number; cause: string } | null;
+	/** Reports of nothing that it takes into account, and the chance that the source is too faint for them. */
+	searched: { reports: number; tooFaintChance: number } | null;
 };
 
 export type BoardWindow = {

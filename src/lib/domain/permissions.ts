@@ -19,6 +19,8 @@ export const PERMISSIONS = {
 	/** Their own claim; stewards any. */
 	releaseSlot: ['observer', 'steward'],
 	reportSlot: ['observer'],
+	/** Their own; stewards any. */
+	withdrawReport: ['observer', 'steward'],
 
 	viewCirculars: ['duty', 'observer', 'pi', 'steward', 'partner'],
 	writeCircular: ['duty'],

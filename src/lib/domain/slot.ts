@@ -71,3 +71,6 @@ export const reportSchema = z
 		}
 	});
 export type ReportInput = z.output<typeof reportSchema>;
+
+/** Body of `POST /api/v1/reports/{id}/withdraw`. */
+export const withdrawSchema = z.strictObject({ reason: z.string().trim().min(1).max(1000) });

@@ -93,6 +93,7 @@ export const JOURNAL_KINDS = [
 	'slotLapsed',
 	'onSky',
 	'reported',
+	'reportWithdrawn',
 	'circularPublished',
 	'membershipConfirmed',
 	'alertMoved',

@@ -1,12 +1,14 @@
 import { sinceT0 } from '../../domain/duration';
 import type {
 	BoardOutlookRow,
+	BoardRegion,
 	BoardReport,
 	BoardTelescope,
 	BoardTransient
 } from '../../domain/board';
 import { REPORT_KIND_LABELS } from '../../domain/vocabulary';
 import { canObserve } from '../band/duskBand';
+import { formatShare } from '../format/formatQuantity';
 
 /** Who triggered and who refined it, each with its time since T0, in order of arrival. */
 export function heardFrom({ parts, t0 }: BoardTransient): { name: string; since: string }[] {
@@ -67,4 +69,13 @@ export function reportText(report: BoardReport): string {
 	}
 	if (report.limitMag !== null) return `${kind},${filter} > ${report.limitMag.toFixed(1)}`;
 	return kind;
+}
+
+/** What looking in vain says: `2 reports of nothing are in it; 43% that it is too faint for all of them`. */
+export function searchedText(searched: NonNullable<BoardRegion['searched']>): string {
+	const one = searched.reports === 1;
+	const reports = one
+		? '1 report of nothing is in it'
+		: `${searched.reports} reports of nothing are in it`;
+	return `${reports}; ${formatShare(searched.tooFaintChance)} that it is too faint for ${one ? 'it' : 'all of them'}`;
 }

@@ -137,7 +137,8 @@ function world(): {
 			area90Deg2: joint.area90Deg2,
 			equivalentRadiusDeg: joint.equivalentRadiusDeg,
 			logOddsAgreement: Math.log(310),
-			before: { area90Deg2: 28.31, cause: 'Carapace P-1, serial 1' }
+			before: { area90Deg2: 28.31, cause: 'Carapace P-1, serial 1' },
+			searched: null
 		},
 		outlook,
 		slots: [],
@@ -185,6 +186,13 @@ describe('the joint region', () => {
 		expect(step(area, '90 % region')).toContain(formatArea(region.area90Deg2));
 		expect(step(area, '90 % region')).toContain(formatArea(region.area50Deg2));
 		expect(step(area, 'Before')).toBe('28.3 deg²; changed by Carapace P-1, serial 1');
+	});
+	it('says how many reports of nothing are in it, and the chance of too faint a source', () => {
+		expect(step(explainArea(transient, region), 'Looked at, nothing seen')).toBe('');
+		const searched = { ...region, searched: { reports: 2, tooFaintChance: 0.374 } };
+		const text = step(explainArea(transient, searched), 'Looked at, nothing seen');
+		expect(text).toContain('2 reports of nothing');
+		expect(text).toContain('37 %');
 	});
 	it('names each live alert with its shape and its arrival', () => {
 		const area = explainArea(transient, region);

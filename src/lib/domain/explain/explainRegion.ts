@@ -27,6 +27,7 @@ export function explainArea(transient: BoardTransient, region: BoardRegion): Exp
 		steps: [
 			...partSteps(transient),
 			{ label: 'Joined', text: METHODS[region.method] },
+			...searchedSteps(region),
 			...(region.sigmaDeg === null
 				? []
 				: [
@@ -53,8 +54,22 @@ export function explainArea(transient: BoardTransient, region: BoardRegion): Exp
 			'Each stated error holds; the stream’s systematic error is added in quadrature.',
 			...(region.method === 'mesh' ? ['Areas on the mesh are good to 1 %.'] : [])
 		],
-		sources: transient.parts.some(({ shape }) => shape.kind === 'circle') ? [SOURCES.fisher] : []
+		sources: [
+			...(transient.parts.some(({ shape }) => shape.kind === 'circle') ? [SOURCES.fisher] : []),
+			...(region.searched ? [SOURCES.search] : [])
+		]
 	};
+}
+
+/** What reports of nothing did to the region. */
+function searchedSteps({ searched }: BoardRegion): Explanation['steps'] {
+	if (!searched) return [];
+	return [
+		{
+			label: 'Looked at, nothing seen',
+			text: `${counted(searched.reports, 'report')} of nothing: where somebody looked, the density is multiplied by 1 − q × the chance of a detection there, q = 0.9. The chance that the source is too faint for all of them is ${(searched.tooFaintChance * 100).toFixed(0)} %.`
+		}
+	];
 }
 
 /** The joint region's centre. */

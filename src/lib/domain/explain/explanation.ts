@@ -15,6 +15,7 @@ export const SOURCES = {
 	airmass: 'Airmass: Kasten & Young 1989, Applied Optics 28, 4735',
 	moonlight: 'Moonlight: Krisciunas & Schaefer 1991, PASP 103, 1033',
 	coverage: 'Greedy coverage: Nemhauser, Wolsey & Fisher 1978, Math. Programming 14, 265',
+	search: 'Looking and not finding: Koopman 1946; Stone 1975, Theory of Optimal Search',
 	fade: 'Default fade: Akerlof & Swan 2007, ApJ 671, 1868; a later sample is fainter: Wang et al. 2013, arXiv:1307.5939'
 } as const;
 

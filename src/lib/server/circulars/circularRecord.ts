@@ -1,4 +1,4 @@
-import { and, asc, desc, eq, gt, inArray, sql } from 'drizzle-orm';
+import { and, asc, desc, eq, gt, inArray, isNull, sql } from 'drizzle-orm';
 import type { ReportKind } from '../../domain/vocabulary';
 import type { Equatorial } from '../../sky/angle';
 import type { Shape } from '../../sky/regions/shape';
@@ -134,7 +134,13 @@ async function readReports(executor: Executor, transientId: string): Promise<Rec
 		.from(report)
 		.leftJoin(telescope, eq(telescope.id, report.telescopeId))
 		.innerJoin(person, eq(person.id, report.reportedBy))
-		.where(and(eq(report.transientId, transientId), inArray(report.kind, ['detection', 'limit'])))
+		.where(
+			and(
+				eq(report.transientId, transientId),
+				inArray(report.kind, ['detection', 'limit']),
+				isNull(report.withdrawnAt)
+			)
+		)
 		.orderBy(asc(report.observedAt));
 	return rows.map((row) => ({
 		kind: row.kind === 'detection' ? 'detection' : 'limit',

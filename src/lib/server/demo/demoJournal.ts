@@ -1,6 +1,6 @@
 import { sinceT0 } from '../../domain/duration';
 import { DECISION_LABELS } from '../../domain/vocabulary';
-import { reportSummary } from '../reports/reportService';
+import { reportSummary } from '../reports/reportSummary';
 import type { JournalEntry } from '../transients/journalStore';
 import { formatArea } from '../../domain/area';
 import type { Chapter } from './demoHistory';

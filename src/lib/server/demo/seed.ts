@@ -1,5 +1,6 @@
 import { chmodSync, readFileSync, writeFileSync } from 'node:fs';
 import { pathToFileURL } from 'node:url';
+import { searchedRegion } from '../../sky/catch/searchedRegion';
 import { jointRegion } from '../../sky/regions/jointRegion';
 import type { App } from '../app';
 import { parseConfig } from '../config';
@@ -31,6 +32,8 @@ async function main(): Promise<void> {
 			queue: bossQueue(boss),
 			compute: {
 				jointRegion: async (parts) => jointRegion(parts),
+				searchedRegion: async ({ shapes, reports, t0Ms, fade }) =>
+					searchedRegion(shapes, reports, t0Ms, fade),
 				outlook: () => Promise.reject(new Error('the seed leaves outlooks to the workers')),
 				close: async () => {}
 			},

@@ -2,14 +2,25 @@ import { existsSync } from 'node:fs';
 import { resolve } from 'node:path';
 import { pathToFileURL } from 'node:url';
 import { Piscina } from 'piscina';
-import type { OutlookInput, Outlook } from '../../sky/outlook/outlook';
+import type { NotFound } from '../../sky/catch/looks';
+import type { SearchedRegion } from '../../sky/catch/searchedRegion';
+import type { FadeModel, OutlookInput, Outlook } from '../../sky/outlook/outlook';
 import type { JointRegion } from '../../sky/regions/jointRegion';
 import type { Shape } from '../../sky/regions/shape';
+
+/** The arguments of `searchedRegion`, in one piece for a thread. */
+export type SearchInput = {
+	shapes: Shape[];
+	reports: NotFound[];
+	t0Ms: number;
+	fade: FadeModel;
+};
 
 /** The heavy computations, off the web process's event loop. */
 export type ComputePool = {
 	outlook: (input: OutlookInput) => Promise<Outlook>;
 	jointRegion: (parts: Shape[]) => Promise<JointRegion>;
+	searchedRegion: (input: SearchInput) => Promise<SearchedRegion>;
 	close: () => Promise<void>;
 };
 
@@ -28,6 +39,7 @@ export function createComputePool(threads: number): ComputePool {
 	return {
 		outlook: (input) => pool.run(input, { name: 'outlook' }) as Promise<Outlook>,
 		jointRegion: (parts) => pool.run(parts, { name: 'joint' }) as Promise<JointRegion>,
+		searchedRegion: (input) => pool.run(input, { name: 'searched' }) as Promise<SearchedRegion>,
 		close: () => pool.destroy()
 	};
 }

@@ -38,7 +38,8 @@ export async function outlookBasis(
 	};
 }
 
-async function fadeOf(executor: Executor, transientId: string): Promise<FadeModel | null> {
+/** The fade of the stream that heard a transient first; null without alerts. */
+export async function fadeOf(executor: Executor, transientId: string): Promise<FadeModel | null> {
 	const [first] = await executor
 		.select({ fade: stream.fade })
 		.from(alert)

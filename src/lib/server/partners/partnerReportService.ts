@@ -8,7 +8,7 @@ import { report } from '../db/schema/slots';
 import { transient } from '../db/schema/transients';
 import { writeTransaction } from '../db/writeTransaction';
 import { DomainError } from '../domainError';
-import { reportSummary } from '../reports/reportService';
+import { reportSummary } from '../reports/reportSummary';
 import { writeJournal } from '../transients/journalStore';
 
 /** A report may be dated this far ahead of the server's clock. */
@@ -95,6 +95,7 @@ export async function listOwnReports(app: App, actor: Actor | null): Promise<Par
 			and(
 				eq(report.reportedBy, actor.id),
 				isNull(report.telescopeId),
+				isNull(report.withdrawnAt),
 				inArray(report.kind, ['detection', 'limit'])
 			)
 		)

@@ -1,18 +1,23 @@
 import { eq } from 'drizzle-orm';
-import { REPORT_KIND_LABELS } from '../../domain/vocabulary';
 import type { ReportInput } from '../../domain/slot';
 import { requirePermission, type Actor } from '../actor';
+import { lockTriage } from '../alerts/alertStore';
 import type { App } from '../app';
 import { report, slot } from '../db/schema/slots';
 import { writeTransaction } from '../db/writeTransaction';
 import { DomainError } from '../domainError';
 import { lockOwnSlot, requireTransition } from '../slots/slotService';
 import { writeJournal, type JournalEntry } from '../transients/journalStore';
+import { followReports } from '../transients/regionService';
+import { reportSummary } from './reportSummary';
 
 /** A report may be dated this far ahead of the server's clock. */
 const CLOCK_GRACE_MS = 5 * 60_000;
 
-/** Records what came of a slot and ends it. A report of an exposure nobody announced says when it began. */
+/**
+ * Records what came of a slot and ends it. A report of an exposure nobody announced says when it began; one
+ * of nothing moves the region away from where the telescope looked.
+ */
 export async function reportSlot(
 	app: App,
 	actor: Actor | null,
@@ -21,6 +26,8 @@ export async function reportSlot(
 ): Promise<{ reportId: string }> {
 	requirePermission(actor, 'reportSlot');
 	return writeTransaction(app, async (tx, change) => {
+		// A limit makes the region's next version, as alerts do: one at a time.
+		if (input.kind === 'limit') await lockTriage(tx);
 		const { row, telescopeName } = await lockOwnSlot(tx, actor, slotId);
 		requireTransition(row.state, 'reported');
 		const now = app.now();
@@ -78,20 +85,12 @@ export async function reportSlot(
 			detail: { ...detail, reportId: stored!.id, kind: input.kind }
 		});
 		await writeJournal(tx, ...entries);
+		if (input.kind === 'limit') {
+			const cause = `${telescopeName} saw nothing to ${input.filter ?? row.filter} ${input.limitMag?.toFixed(1)}`;
+			await followReports(app, tx, change, row.transientId, cause);
+		}
 		return { reportId: stored!.id };
 	});
-}
-
-/** A report in one short phrase: "Detection, R = 19.32 ± 0.05". */
-export function reportSummary(
-	input: Pick<ReportInput, 'kind' | 'filter' | 'magnitude' | 'magnitudeError' | 'limitMag'>
-): string {
-	const label = REPORT_KIND_LABELS[input.kind];
-	if (input.kind === 'detection') {
-		return `${label}, ${input.filter} = ${input.magnitude?.toFixed(2)} ± ${input.magnitudeError?.toFixed(2)}`;
-	}
-	if (input.kind === 'limit') return `${label}, ${input.filter} > ${input.limitMag?.toFixed(2)}`;
-	return label;
 }
 
 function clampDate(ms: number, low: Date, high: Date): Date {

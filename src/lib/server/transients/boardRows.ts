@@ -1,4 +1,4 @@
-import { and, asc, eq, inArray, notInArray, sql } from 'drizzle-orm';
+import { and, asc, eq, inArray, isNull, notInArray, sql } from 'drizzle-orm';
 import type {
 	BoardOutlook,
 	BoardPart,
@@ -47,7 +47,7 @@ export async function boardTransients(
 	const reports = await executor
 		.select()
 		.from(report)
-		.where(inArray(report.transientId, ids))
+		.where(and(inArray(report.transientId, ids), isNull(report.withdrawnAt)))
 		.orderBy(asc(report.observedAt));
 	const people = await executor
 		.select({ id: person.id, name: person.name, initials: person.initials })
@@ -119,7 +119,9 @@ async function latestRegions(executor: Executor, ids: string[]) {
 		area50Deg2: region.area50Deg2,
 		area90Deg2: region.area90Deg2,
 		equivalentRadiusDeg: region.equivalentRadiusDeg,
-		logOddsAgreement: region.logOddsAgreement
+		logOddsAgreement: region.logOddsAgreement,
+		notFoundCount: region.notFoundCount,
+		tooFaintChance: region.tooFaintChance
 	};
 	const ranked = executor
 		.select({
@@ -152,7 +154,11 @@ function boardRegion([latest, before]: RegionVersion[]): BoardRegion | null {
 		area90Deg2: latest.area90Deg2,
 		equivalentRadiusDeg: latest.equivalentRadiusDeg,
 		logOddsAgreement: latest.logOddsAgreement,
-		before: before ? { area90Deg2: before.area90Deg2, cause: latest.cause } : null
+		before: before ? { area90Deg2: before.area90Deg2, cause: latest.cause } : null,
+		searched:
+			latest.tooFaintChance === null
+				? null
+				: { reports: latest.notFoundCount, tooFaintChance: latest.tooFaintChance }
 	};
 }
 

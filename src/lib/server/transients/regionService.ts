@@ -2,7 +2,7 @@ import { and, desc, eq } from 'drizzle-orm';
 import { jointRegion, type JointRegion } from '../../sky/regions/jointRegion';
 import { formatArea } from '../../domain/area';
 import type { App } from '../app';
-import { liveParts } from '../alerts/alertStore';
+import { liveParts, type LivePart } from '../alerts/alertStore';
 import { logOddsOfAgreement } from '../alerts/association';
 import type { Transaction } from '../db/database';
 import { region, transient } from '../db/schema/transients';
@@ -10,11 +10,13 @@ import { alert } from '../db/schema/alerts';
 import { slot } from '../db/schema/slots';
 import type { Change } from '../db/writeTransaction';
 import { requestOutlook } from '../outlook/outlookRequests';
+import { fadeOf } from '../outlook/outlookService';
+import { standingNotFound } from '../reports/notFoundStore';
 import { writeJournal } from './journalStore';
 
 /**
- * Makes the joint region anew from a transient's live alerts, as its next version, and asks for the
- * outlook. Without live alerts the transient is closed and its offers lapse.
+ * Makes the joint region anew from a transient's live alerts and the reports of nothing that stand, as its
+ * next version, and asks for the outlook. Without live alerts the transient is closed and its offers lapse.
  */
 export async function deriveRegion(
 	app: App,
@@ -25,15 +27,39 @@ export async function deriveRegion(
 ): Promise<void> {
 	change.touch(transientId);
 	const parts = await liveParts(tx, transientId);
-	const first = parts[0];
-	if (!first) return closeWithoutAlerts(app, tx, transientId);
+	if (parts.length === 0) return closeWithoutAlerts(app, tx, transientId);
+	await storeNextRegion(app, tx, transientId, parts, cause);
+	await tx.update(transient).set({ state: 'open' }).where(eq(transient.id, transientId));
+	await requestOutlook(app, tx, transientId);
+}
 
-	const shapes = parts.map((part) => part.shape);
-	// Circles have a closed form; anything else is meshed in a compute thread.
-	const joint = shapes.every((shape) => shape.kind === 'circle')
-		? jointRegion(shapes)
-		: await app.compute.jointRegion(shapes);
+/**
+ * The same after a report was made or withdrawn, which neither opens nor closes a transient. Call it with
+ * the triage lock held.
+ */
+export async function followReports(
+	app: App,
+	tx: Transaction,
+	change: Change,
+	transientId: string,
+	cause: string
+): Promise<void> {
+	const parts = await liveParts(tx, transientId);
+	if (parts.length === 0) return;
+	change.touch(transientId);
+	await storeNextRegion(app, tx, transientId, parts, cause);
+	await requestOutlook(app, tx, transientId);
+}
+
+async function storeNextRegion(
+	app: App,
+	tx: Transaction,
+	transientId: string,
+	parts: LivePart[],
+	cause: string
+): Promise<void> {
 	const t0 = new Date(Math.min(...parts.map((part) => part.t0.getTime())));
+	const { joint, notFoundCount, tooFaintChance } = await regionNow(app, tx, transientId, parts, t0);
 	const [before] = await tx
 		.select({ version: region.version, area90Deg2: region.area90Deg2 })
 		.from(region)
@@ -56,13 +82,15 @@ export async function deriveRegion(
 		area90Deg2: joint.area90Deg2,
 		equivalentRadiusDeg: joint.equivalentRadiusDeg,
 		logOddsAgreement: logOddsOfAgreement(parts),
+		notFoundCount,
+		tooFaintChance,
 		points: joint.points,
 		moc50: joint.moc50,
 		moc90: joint.moc90
 	});
 	await tx
 		.update(transient)
-		.set({ regionVersion: version, t0, state: 'open' })
+		.set({ regionVersion: version, t0 })
 		.where(eq(transient.id, transientId));
 	await writeJournal(tx, {
 		transientId,
@@ -77,7 +105,36 @@ export async function deriveRegion(
 			cause
 		}
 	});
-	await requestOutlook(app, tx, transientId);
+}
+
+type RegionNow = { joint: JointRegion; notFoundCount: number; tooFaintChance: number | null };
+
+async function regionNow(
+	app: App,
+	tx: Transaction,
+	transientId: string,
+	parts: LivePart[],
+	t0: Date
+): Promise<RegionNow> {
+	const shapes = parts.map((part) => part.shape);
+	const reports = (await standingNotFound(tx, transientId)).filter(
+		(report) => report.atMs >= t0.getTime()
+	);
+	const fade = reports.length > 0 ? await fadeOf(tx, transientId) : null;
+	if (fade) {
+		const input = { shapes, reports, t0Ms: t0.getTime(), fade };
+		const searched = await app.compute.searchedRegion(input);
+		return {
+			joint: searched.region,
+			notFoundCount: reports.length,
+			tooFaintChance: searched.tooFaintChance
+		};
+	}
+	// Circles have a closed form; anything else is meshed in a compute thread.
+	const joint = shapes.every((shape) => shape.kind === 'circle')
+		? jointRegion(shapes)
+		: await app.compute.jointRegion(shapes);
+	return { joint, notFoundCount: 0, tooFaintChance: null };
 }
 
 function regionSummary(joint: JointRegion, before90Deg2: number | null): string {

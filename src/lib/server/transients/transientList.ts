@@ -1,4 +1,4 @@
-import { and, desc, eq, ilike, inArray, lt, sql } from 'drizzle-orm';
+import { and, desc, eq, ilike, inArray, isNull, lt, sql } from 'drizzle-orm';
 import type { Decision, TransientState } from '../../domain/vocabulary';
 import { requirePermission, type Actor } from '../actor';
 import type { App } from '../app';
@@ -79,7 +79,13 @@ export async function listTransients(
 		database
 			.select({ id: report.transientId, count: sql<number>`count(*)::int` })
 			.from(report)
-			.where(and(inArray(report.transientId, ids), eq(report.kind, 'detection')))
+			.where(
+				and(
+					inArray(report.transientId, ids),
+					eq(report.kind, 'detection'),
+					isNull(report.withdrawnAt)
+				)
+			)
 			.groupBy(report.transientId)
 	]);
 	return {

@@ -77,10 +77,17 @@ export const report = pgTable(
 		reportedBy: uuid('reported_by')
 			.notNull()
 			.references(() => person.id),
-		reportedAt: instant('reported_at').notNull().defaultNow()
+		reportedAt: instant('reported_at').notNull().defaultNow(),
+		/** Taken back: it stays in the journal and counts nowhere. */
+		withdrawnAt: instant('withdrawn_at'),
+		withdrawnBy: uuid('withdrawn_by').references(() => person.id)
 	},
 	(table) => [
 		index('report_transient').on(table.transientId),
+		check(
+			'report_withdrawn_whole',
+			sql`(${table.withdrawnAt} is null) = (${table.withdrawnBy} is null)`
+		),
 		check(
 			'report_kind_values',
 			sql`(${table.kind} = 'detection') = (${table.magnitude} is not null) and (${table.kind} = 'limit') = (${table.limitMag} is not null)`

@@ -85,6 +85,10 @@ export const region = pgTable(
 		equivalentRadiusDeg: doublePrecision('equivalent_radius_deg').notNull(),
 		/** Natural log of the odds that all live alerts come from one source; null with fewer than two. */
 		logOddsAgreement: doublePrecision('log_odds_agreement'),
+		/** Number of reports of nothing that it takes into account. */
+		notFoundCount: integer('not_found_count').notNull().default(0),
+		/** Chance that the source is where somebody looked but fainter than every limit there; null when nobody did. */
+		tooFaintChance: doublePrecision('too_faint_chance'),
 		points: jsonb('points').$type<RegionPoints>().notNull(),
 		moc50: skyRegion('moc50').notNull(),
 		moc90: skyRegion('moc90').notNull()
