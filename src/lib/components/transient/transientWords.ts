@@ -77,5 +77,5 @@ export function searchedText(searched: NonNullable<BoardRegion['searched']>): st
 	const reports = one
 		? '1 report of nothing is in it'
 		: `${searched.reports} reports of nothing are in it`;
-	return `${reports}; ${formatShare(searched.tooFaintChance)} that it is too faint for ${one ? 'it' : 'all of them'}`;
+	return `${reports}; ${formatShare(searched.tooFaintChance)} that the source is too faint for ${one ? 'it' : 'all of them'}`;
 }

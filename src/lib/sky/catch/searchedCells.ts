@@ -9,6 +9,8 @@ import { verdictOf, type Look, type Verdict } from './looks';
 const EDGE_PROBABILITY = 1e-4;
 /** Other cells on an edge are divided once more, this many orders down, and each piece judged at its centre. */
 const LAST_ORDERS = 2;
+/** Cells with less probability than this are judged whole, at their centre: nobody sees the difference. */
+const NEGLIGIBLE_PROBABILITY = 1e-6;
 
 /** A cell with its prior density and what was seen of it. */
 export type SearchedCell = MeshCell & Verdict;
@@ -73,7 +75,8 @@ function divided(
 			tiles: open.filter((item) => item.look === look).map(({ tile }) => tile)
 		}))
 		.filter(({ covers, tiles }) => covers || tiles.length > 0);
-	const order = Math.min(CELL_ORDER_MAX, cell.order + LAST_ORDERS);
+	const negligible = cell.density * cellAreaSr(cell.order) < NEGLIGIBLE_PROBABILITY;
+	const order = negligible ? cell.order : Math.min(CELL_ORDER_MAX, cell.order + LAST_ORDERS);
 	const count = 4 ** (order - cell.order);
 	const pieces = Array.from({ length: count }, (_, i): SearchedCell => {
 		const pixel = cell.pixel * count + i;

@@ -194,7 +194,7 @@ describe('the region after looking and not finding', () => {
 			}
 		);
 		fc.assert(check, { numRuns: 10 });
-	}, 30_000);
+	}, 60_000);
 });
 
 describe('the side of a footprint that a disc lies on', () => {

@@ -1,7 +1,7 @@
 import type { Equatorial } from '../angle';
 import { cellAreaSr } from '../healpix/healpix';
 import { mocContains } from '../moc/moc';
-import { norm, normalise, toEquatorial, type Vector } from '../vector';
+import { angleBetweenDeg, norm, normalise, toEquatorial, type Vector } from '../vector';
 import { capRadiusDeg } from './cap';
 import { credibleRegion } from './credible';
 import type { JointRegion } from './jointRegion';
@@ -19,7 +19,10 @@ export function meshRegion(cells: MeshCell[]): JointRegion {
 	return {
 		method: 'mesh',
 		// The mean of a ring, or of two separate patches, is a place where the source is not.
-		centre: mocContains(most.moc, mean) ? mean : likeliestPoint(points),
+		// The likeliest point may do no better: it stands for cells with a searched field between them.
+		centre:
+			[mean, likeliestPoint(points)].find((place) => mocContains(most.moc, place)) ??
+			toEquatorial(densestCell(cells, middle)),
 		sigmaDeg: null,
 		area50Deg2: half.areaDeg2,
 		area90Deg2: most.areaDeg2,
@@ -40,6 +43,18 @@ function centreOfMass(cells: MeshCell[]): Vector {
 	}
 	// A full ring or sky has its centre of mass in the middle of the Earth: any cell will do then.
 	return norm(sum) > 1e-9 ? normalise(sum) : (cells[0]?.at ?? { x: 1, y: 0, z: 0 });
+}
+
+/** Of the densest cells the one nearest to `middle`: the first that any credible region takes. */
+function densestCell(cells: MeshCell[], middle: Vector): Vector {
+	const most = cells.reduce((greatest, cell) => Math.max(greatest, cell.density), 0);
+	let best = { at: middle, distanceDeg: Infinity };
+	for (const { at, density } of cells) {
+		if (density < most) continue;
+		const distanceDeg = angleBetweenDeg(at, middle);
+		if (distanceDeg < best.distanceDeg) best = { at, distanceDeg };
+	}
+	return best.at;
 }
 
 function likeliestPoint(points: RegionPoints): Equatorial {
