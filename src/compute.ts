@@ -1,4 +1,6 @@
 // Entry of the compute threads (built by vite.workers.config.ts, run by outlook/computePool.ts).
+import { constants, setPriority } from 'node:os';
+import { isMainThread } from 'node:worker_threads';
 import { searchedRegion, type SearchedRegion } from './lib/sky/catch/searchedRegion';
 import type { NotFound } from './lib/sky/catch/looks';
 import { computeOutlook } from './lib/sky/outlook/computeOutlook';
@@ -6,6 +8,11 @@ import type { FadeModel, Outlook, OutlookInput } from './lib/sky/outlook/outlook
 import { jointRegion } from './lib/sky/regions/jointRegion';
 import type { JointRegion } from './lib/sky/regions/jointRegion';
 import type { Shape } from './lib/sky/regions/shape';
+
+// On Linux a priority belongs to a thread: where cores are few, answers to people go first.
+if (!isMainThread) setPriority(constants.priority.PRIORITY_BELOW_NORMAL);
+
+export { outlookText } from './lib/server/outlook/outlookText';
 
 export function outlook(input: OutlookInput): Outlook {
 	return computeOutlook(input);

@@ -10,6 +10,7 @@ import type { Job, Queue } from '../../src/lib/server/jobs/queue';
 import type { AuthenticatedStream } from '../../src/lib/server/streams/streamKeyService';
 import { alertPacketSchema } from '../../src/lib/domain/alertPacket';
 import type { Role, StreamClass } from '../../src/lib/domain/vocabulary';
+import { outlookText } from '../../src/lib/server/outlook/outlookText';
 import { computeOutlook } from '../../src/lib/sky/outlook/computeOutlook';
 import { searchedRegion } from '../../src/lib/sky/catch/searchedRegion';
 import { jointRegion } from '../../src/lib/sky/regions/jointRegion';
@@ -45,6 +46,7 @@ export async function openWorld(start = NIGHT) {
 		queue,
 		compute: {
 			outlook: (input) => Promise.resolve(computeOutlook(structuredClone(input))),
+			outlookText: (input) => Promise.resolve(outlookText(structuredClone(input))),
 			jointRegion: (parts) => Promise.resolve(jointRegion(parts)),
 			searchedRegion: ({ shapes, reports, t0Ms, fade }) =>
 				Promise.resolve(searchedRegion(shapes, reports, t0Ms, fade)),

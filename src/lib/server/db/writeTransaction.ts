@@ -34,7 +34,7 @@ export async function writeTransaction<T>(
 					touch: (id) => void touched.add(id),
 					touchNetwork: () => void (network = true)
 				});
-				if (touched.size > 0 || network) revision = await moveRevision(tx, touched);
+				if (touched.size > 0 || network) revision = await moveRevision(tx, touched, network);
 				return result;
 			});
 			if (revision !== null) noteRevision(app.database, revision);
@@ -46,10 +46,15 @@ export async function writeTransaction<T>(
 	}
 }
 
-async function moveRevision(tx: Transaction, touched: Set<string>): Promise<number> {
+async function moveRevision(
+	tx: Transaction,
+	touched: Set<string>,
+	network: boolean
+): Promise<number> {
+	const next = sql`${boardRevision.value} + 1`;
 	const [row] = await tx
 		.update(boardRevision)
-		.set({ value: sql`${boardRevision.value} + 1` })
+		.set(network ? { value: next, network: next } : { value: next })
 		.returning({ value: boardRevision.value });
 	const revision = row!.value;
 	for (const id of touched) {

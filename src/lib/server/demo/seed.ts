@@ -17,6 +17,8 @@ const UNUSED = {
 };
 
 /** Seeds the database named by DATABASE_URL; stream keys go to the file named by DUSKLINE_DEMO_KEYS_FILE. */
+const leftToWorkers = () => Promise.reject(new Error('the seed leaves outlooks to the workers'));
+
 async function main(): Promise<void> {
 	const config = parseConfig({ ...UNUSED, ...process.env });
 	const keysFile = process.env.DUSKLINE_DEMO_KEYS_FILE;
@@ -34,7 +36,8 @@ async function main(): Promise<void> {
 				jointRegion: async (parts) => jointRegion(parts),
 				searchedRegion: async ({ shapes, reports, t0Ms, fade }) =>
 					searchedRegion(shapes, reports, t0Ms, fade),
-				outlook: () => Promise.reject(new Error('the seed leaves outlooks to the workers')),
+				outlook: leftToWorkers,
+				outlookText: leftToWorkers,
 				close: async () => {}
 			},
 			now: () => new Date()

@@ -7,6 +7,7 @@ import type { SearchedRegion } from '../../sky/catch/searchedRegion';
 import type { FadeModel, OutlookInput, Outlook } from '../../sky/outlook/outlook';
 import type { JointRegion } from '../../sky/regions/jointRegion';
 import type { Shape } from '../../sky/regions/shape';
+import type { OutlookText } from './outlookText';
 
 /** The arguments of `searchedRegion`, in one piece for a thread. */
 export type SearchInput = {
@@ -19,6 +20,8 @@ export type SearchInput = {
 /** The heavy computations, off the web process's event loop. */
 export type ComputePool = {
 	outlook: (input: OutlookInput) => Promise<Outlook>;
+	/** The same written as JSON in the thread. */
+	outlookText: (input: OutlookInput) => Promise<OutlookText>;
 	jointRegion: (parts: Shape[]) => Promise<JointRegion>;
 	searchedRegion: (input: SearchInput) => Promise<SearchedRegion>;
 	close: () => Promise<void>;
@@ -38,6 +41,7 @@ export function createComputePool(threads: number): ComputePool {
 	});
 	return {
 		outlook: (input) => pool.run(input, { name: 'outlook' }) as Promise<Outlook>,
+		outlookText: (input) => pool.run(input, { name: 'outlookText' }) as Promise<OutlookText>,
 		jointRegion: (parts) => pool.run(parts, { name: 'joint' }) as Promise<JointRegion>,
 		searchedRegion: (input) => pool.run(input, { name: 'searched' }) as Promise<SearchedRegion>,
 		close: () => pool.destroy()

@@ -1,4 +1,4 @@
-import { and, asc, desc, eq, lte } from 'drizzle-orm';
+import { and, asc, desc, eq, lte, sql } from 'drizzle-orm';
 import type { FadeModel, Outlook, OutlookInput } from '../../sky/outlook/outlook';
 import type { App } from '../app';
 import { writeTransaction } from '../db/writeTransaction';
@@ -21,7 +21,13 @@ export async function outlookBasis(
 	transientId: string
 ): Promise<OutlookBasis | null> {
 	const [latest] = await executor
-		.select({ t0: transient.t0, region })
+		.select({
+			t0: transient.t0,
+			version: region.version,
+			raDeg: region.raDeg,
+			decDeg: region.decDeg,
+			points: region.points
+		})
 		.from(region)
 		.innerJoin(transient, eq(transient.id, region.transientId))
 		.where(eq(region.transientId, transientId))
@@ -31,10 +37,10 @@ export async function outlookBasis(
 	if (!latest || !fade) return null;
 	return {
 		t0Ms: latest.t0.getTime(),
-		centre: { raDeg: latest.region.raDeg, decDeg: latest.region.decDeg },
-		points: latest.region.points,
+		centre: { raDeg: latest.raDeg, decDeg: latest.decDeg },
+		points: latest.points,
 		fade,
-		regionVersion: latest.region.version
+		regionVersion: latest.version
 	};
 }
 
@@ -59,14 +65,17 @@ export async function refreshOutlook(app: App, transientId: string): Promise<voi
 	if (row?.state !== 'open') return;
 	const basis = await outlookBasis(app.database, transientId);
 	if (!basis) return;
-	const computed = await computeOutlookFor(app, basis);
+	const { text, ...figures } = await app.compute.outlookText(
+		await outlookInput(app, basis, app.now())
+	);
 	await writeTransaction(app, async (tx, change) => {
 		const values = {
 			regionVersion: basis.regionVersion,
-			computedAt: new Date(computed.computedMs),
-			networkCatch: computed.networkCatch,
-			costOfWaitingPoints: computed.costOfWaitingPoints,
-			body: computed
+			computedAt: new Date(figures.computedMs),
+			networkCatch: figures.networkCatch,
+			costOfWaitingPoints: figures.costOfWaitingPoints,
+			// As the thread wrote it: an outlook is large, and this process has people to answer.
+			body: sql<Outlook>`${text}::jsonb`
 		};
 		const stored = await tx
 			.insert(outlook)
@@ -81,7 +90,8 @@ export async function refreshOutlook(app: App, transientId: string): Promise<voi
 			})
 			.returning({ transientId: outlook.transientId });
 		if (stored.length === 0) return;
-		await refreshOffers(tx, transientId, computed, basis.regionVersion, app.now());
+		const rows = () => (JSON.parse(text) as Outlook).rows;
+		await refreshOffers(tx, transientId, rows, basis.regionVersion, app.now());
 		change.touch(transientId);
 	});
 }
@@ -93,14 +103,23 @@ export async function computeOutlookFor(
 	options: { from?: Date; telescopeId?: string } = {}
 ): Promise<Outlook> {
 	const from = options.from ?? app.now();
-	const { specs } = await telescopeSpecs(app.database, from, options.telescopeId);
-	return app.compute.outlook({
+	return app.compute.outlook(await outlookInput(app, basis, from, options.telescopeId));
+}
+
+async function outlookInput(
+	app: App,
+	{ t0Ms, centre, points, fade }: OutlookBasis,
+	from: Date,
+	telescopeId?: string
+): Promise<OutlookInput> {
+	const { specs } = await telescopeSpecs(app.database, from, telescopeId);
+	return {
 		nowMs: from.getTime(),
 		spanHours: OUTLOOK_SPAN_HOURS,
-		t0Ms: basis.t0Ms,
-		centre: basis.centre,
-		points: basis.points,
+		t0Ms,
+		centre,
+		points,
 		telescopes: specs,
-		fade: basis.fade
-	});
+		fade
+	};
 }

@@ -1,5 +1,5 @@
 import { and, eq, inArray, sql } from 'drizzle-orm';
-import type { Outlook, OutlookRow, PlannedTile } from '../../sky/outlook/outlook';
+import type { OutlookRow, PlannedTile } from '../../sky/outlook/outlook';
 import type { Executor } from '../db/database';
 import { telescope } from '../db/schema/network';
 import { slot } from '../db/schema/slots';
@@ -34,12 +34,13 @@ export function tilesWithin(plan: PlannedTile[], range: { start: Date; end: Date
 
 /**
  * Makes the offered slots of a chased transient follow its outlook: one per telescope that could
- * catch it and has no live claim; offers that no longer fit lapse.
+ * catch it and has no live claim; offers that no longer fit lapse. The outlook's rows are asked for only
+ * when they are needed.
  */
 export async function refreshOffers(
 	tx: Executor,
 	transientId: string,
-	outlook: Outlook,
+	outlookRows: () => OutlookRow[],
 	regionVersion: number,
 	now: Date
 ): Promise<void> {
@@ -58,7 +59,7 @@ export async function refreshOffers(
 			)
 		);
 	const wanted = chased
-		? outlook.rows.filter(
+		? outlookRows().filter(
 				(row) =>
 					row.catch >= LEAST_CATCH_OFFERED &&
 					!present.some((item) => item.telescopeId === row.telescopeId && item.state !== 'offered')

@@ -1,15 +1,12 @@
-import { eq, sql } from 'drizzle-orm';
-import type { Board, BoardTelescope, BoardTransient } from '../../domain/board';
-import type { TelescopeLimits } from '../../sky/visibility/telescope';
+import { eq } from 'drizzle-orm';
+import type { Board, BoardTransient } from '../../domain/board';
 import { requirePermission, type Actor } from '../actor';
 import type { App } from '../app';
-import type { Database } from '../db/database';
-import { closure } from '../db/schema/network';
-import { boardRevision, transient } from '../db/schema/transients';
-import { telescopeSpecs } from '../outlook/telescopeSpecs';
-import { currentWatch } from '../rota/rotaService';
-import { holdingSlots } from '../slots/slotList';
 import { currentRevision } from '../db/boardRevisions';
+import { boardRevision, transient } from '../db/schema/transients';
+import { holdingSlots } from '../slots/slotList';
+import { cachedBoard, type CachedBoard, type CachedTransient, type KnownParts } from './boardCache';
+import { boardNetwork } from './boardNetwork';
 import { boardTransients } from './boardRows';
 
 /**
@@ -18,69 +15,74 @@ import { boardTransients } from './boardRows';
  */
 export async function boardFor(app: App, actor: Actor | null, since = 0): Promise<Board> {
 	requirePermission(actor, 'viewBoard');
-	const board = await wholeBoard(app);
-	if (since <= 0 || since > board.revision) return board;
-	return { ...board, transients: board.transients.filter((item) => item.revision > since) };
+	const { shared, transients } = await currentBoard(app);
+	return {
+		serverNow: app.now().toISOString(),
+		...shared,
+		transients: transients.filter(changedAfter(since, shared.revision)).map(({ item }) => item)
+	};
 }
 
-type Cached = { revision: number; minute: number; board: Promise<Board> };
-/** Per process and database: the newest board; made anew when the revision or the minute changes. */
-const cache = new WeakMap<Database, Cached>();
-
-async function wholeBoard(app: App): Promise<Board> {
-	const revision = await currentRevision(app);
-	const minute = Math.floor(app.now().getTime() / 60_000);
-	let entry = cache.get(app.database);
-	if (!entry || entry.revision !== revision || entry.minute !== minute) {
-		const board = makeBoard(app);
-		entry = { revision, minute, board };
-		cache.set(app.database, entry);
-		board.catch(() => cache.delete(app.database));
-	}
-	return { ...(await entry.board), serverNow: app.now().toISOString() };
+/** The same as JSON text: the parts that many people ask for are written once. */
+export async function boardTextFor(
+	app: App,
+	actor: Actor | null,
+	since = 0
+): Promise<{ revision: number; text: string }> {
+	requirePermission(actor, 'viewBoard');
+	const { shared, sharedText, transients } = await currentBoard(app);
+	const chosen = transients.filter(changedAfter(since, shared.revision));
+	const serverNow = JSON.stringify(app.now().toISOString());
+	const texts = chosen.map(({ text }) => text).join(',');
+	return {
+		revision: shared.revision,
+		text: `{"serverNow":${serverNow},${sharedText.slice(1, -1)},"transients":[${texts}]}`
+	};
 }
 
-async function makeBoard(app: App): Promise<Board> {
+/** Nothing to go by (0, or a revision of another database) means everything. */
+function changedAfter(since: number, revision: number): (item: CachedTransient) => boolean {
+	return ({ item }) => since <= 0 || since > revision || item.revision > since;
+}
+
+async function currentBoard(app: App): Promise<CachedBoard> {
+	return cachedBoard(app, await currentRevision(app), makeBoard);
+}
+
+async function makeBoard(app: App, known: KnownParts): Promise<CachedBoard> {
 	const now = app.now();
+	const minute = Math.floor(now.getTime() / 60_000);
 	// One snapshot: the revision and what it stands for must not come from two moments.
 	return app.database.transaction(
 		async (tx) => {
-			const [row] = await tx.select({ value: boardRevision.value }).from(boardRevision);
+			const [row] = await tx.select().from(boardRevision);
+			const { value: revision, network } = row!;
 			const open = await tx.select().from(transient).where(eq(transient.state, 'open'));
-			const transients = (await boardTransients(tx, open)).sort(byCostOfWaiting);
-			const { rows } = await telescopeSpecs(tx, now);
-			const closures = await tx
-				.select()
-				.from(closure)
-				.where(sql`${closure.during} @> ${now.toISOString()}::timestamptz`);
+			const common =
+				known.network({ network, minute }) ?? (await boardNetwork(app, tx, { network, minute }));
+			const kept = open.flatMap(({ id, revision }) => known.transient(id, revision, network) ?? []);
+			const missing = open.filter(({ id }) => !kept.some((item) => item.id === id));
+			const made = await boardTransients(tx, missing, common.names);
+			const transients = [
+				...kept,
+				...made.map((item, index) => ({
+					id: missing[index]!.id,
+					network,
+					item,
+					text: JSON.stringify(item)
+				}))
+			].sort((a, b) => byCostOfWaiting(a.item, b.item));
 			const holds = await holdingSlots(tx, now);
-			const telescopes = rows.map((item): BoardTelescope => ({
-				code: item.code,
-				name: item.name,
-				site: item.site,
-				apertureM: item.apertureM,
-				latDeg: item.latDeg,
-				lonDeg: item.lonDeg,
-				minAltDeg: item.limits.minAltDeg,
-				sunDistanceDeg: item.limits.sunDistanceDeg,
-				filters: item.depths.map((depth) => depth.filter),
-				exposureS: item.exposureS,
-				limits: boardLimits(item.limits),
-				// telescopeSpecs refuses a telescope without a filter.
-				depth: item.depths[0]!,
-				overheadS: item.overheadS,
-				detectors: item.detectors,
-				holds: holds.filter((hold) => hold.telescopeCode === item.code),
-				closed: closedOf(closures, item.id)
-			}));
-			return {
-				revision: row!.value,
-				serverNow: now.toISOString(),
-				openDesignations: transients.map((item) => item.designation),
-				transients,
-				telescopes,
-				watch: await currentWatch(app)
+			const shared = {
+				revision,
+				openDesignations: transients.map(({ item }) => item.designation),
+				telescopes: common.telescopes.map((item) => ({
+					...item,
+					holds: holds.filter((hold) => hold.telescopeCode === item.code)
+				})),
+				watch: common.watch
 			};
+			return { shared, sharedText: JSON.stringify(shared), transients, common };
 		},
 		{ isolationLevel: 'repeatable read', accessMode: 'read only' }
 	);
@@ -96,33 +98,4 @@ export function byCostOfWaiting(a: BoardTransient, b: BoardTransient): number {
 		cost(b) - cost(a) ||
 		b.t0.localeCompare(a.t0)
 	);
-}
-
-function boardLimits({
-	sunAltMaxDeg,
-	maxAltDeg,
-	hourAngleMaxH,
-	decMinDeg,
-	decMaxDeg,
-	moonDistanceDeg,
-	horizon
-}: TelescopeLimits): BoardTelescope['limits'] {
-	return {
-		sunAltMaxDeg,
-		maxAltDeg,
-		hourAngleMaxH,
-		decMinDeg,
-		decMaxDeg,
-		moonDistanceDeg,
-		hasHorizon: horizon !== null
-	};
-}
-
-function closedOf(
-	closures: (typeof closure.$inferSelect)[],
-	telescopeId: string
-): BoardTelescope['closed'] {
-	const own = closures.filter((item) => item.telescopeId === telescopeId);
-	const last = own.sort((a, b) => b.during.end.getTime() - a.during.end.getTime())[0];
-	return last ? { until: last.during.end.toISOString(), reason: last.reason } : null;
 }

@@ -5,30 +5,33 @@ import type {
 	BoardRegion,
 	BoardReport,
 	BoardSlot,
-	BoardTransient,
-	PersonRef
+	BoardTransient
 } from '../../domain/board';
 import type { Outlook } from '../../sky/outlook/outlook';
 import { alertColumns, type AlertWithoutSky } from '../alerts/alertSky';
 import type { Executor } from '../db/database';
 import { alert, stream } from '../db/schema/alerts';
-import { telescope } from '../db/schema/network';
-import { person } from '../db/schema/people';
 import { report, slot } from '../db/schema/slots';
 import { outlook, region } from '../db/schema/transients';
 import { whyNot } from '../outlook/limitWords';
+import {
+	boardNames,
+	personRef,
+	type BoardNames,
+	type Named,
+	type TelescopeName
+} from './boardNames';
 import { headline } from './headline';
 import type { TransientRow } from './transientStore';
-
-type Named = { id: string; name: string; initials: string };
-type TelescopeName = { id: string; code: string; name: string };
 
 /** Everything the board shows of these transients, in their order: one query a table. */
 export async function boardTransients(
 	executor: Executor,
-	rows: TransientRow[]
+	rows: TransientRow[],
+	names?: BoardNames
 ): Promise<BoardTransient[]> {
 	if (rows.length === 0) return [];
+	const { personOf, telescopeOf } = names ?? (await boardNames(executor));
 	const ids = rows.map((row) => row.id);
 	// One after the other: on a transaction's single connection they can't overlap anyway.
 	const parts = await executor
@@ -49,14 +52,6 @@ export async function boardTransients(
 		.from(report)
 		.where(and(inArray(report.transientId, ids), isNull(report.withdrawnAt)))
 		.orderBy(asc(report.observedAt));
-	const people = await executor
-		.select({ id: person.id, name: person.name, initials: person.initials })
-		.from(person);
-	const telescopes = await executor
-		.select({ id: telescope.id, code: telescope.code, name: telescope.name })
-		.from(telescope);
-	const personOf = lookup(people);
-	const telescopeOf = lookup(telescopes);
 	return rows.map((row) => {
 		const own = parts.filter((item) => item.alert.transientId === row.id);
 		const versions = regions.filter((item) => item.transientId === row.id);
@@ -99,11 +94,6 @@ export async function boardTransients(
 			reports: ownReports.map((item) => boardReport(item, personOf, telescopeOf))
 		};
 	});
-}
-
-function lookup<Row extends { id: string }>(rows: Row[]): (id: string) => Row | undefined {
-	const byId = new Map(rows.map((row) => [row.id, row]));
-	return (id) => byId.get(id);
 }
 
 /** The two newest versions of each transient's region, newest first. */
@@ -289,10 +279,4 @@ function boardReport(
 		remarks: item.remarks,
 		reportedBy: personRef(personOf(item.reportedBy))
 	};
-}
-
-export function personRef(row: Named | undefined): PersonRef {
-	return row
-		? { id: row.id, name: row.name, initials: row.initials }
-		: { id: '', name: 'somebody', initials: '?' };
 }

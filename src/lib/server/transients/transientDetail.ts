@@ -12,7 +12,8 @@ import { circular } from '../db/schema/circulars';
 import { person } from '../db/schema/people';
 import { journal, region } from '../db/schema/transients';
 import { boardFor } from './board';
-import { boardTransients, personRef } from './boardRows';
+import { personRef } from './boardNames';
+import { boardTransients } from './boardRows';
 import { requireTransient } from './transientStore';
 
 export type RegionVersion = {

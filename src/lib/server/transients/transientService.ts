@@ -102,7 +102,10 @@ export async function decideTransient(
 			.select({ body: outlook.body, regionVersion: outlook.regionVersion })
 			.from(outlook)
 			.where(eq(outlook.transientId, row.id));
-		if (stored) await refreshOffers(tx, row.id, stored.body, stored.regionVersion, now);
+		if (stored) {
+			const rows = () => stored.body.rows;
+			await refreshOffers(tx, row.id, rows, stored.regionVersion, now);
+		}
 		return { designation, decision: input.decision, decidedAt: now.toISOString() };
 	});
 }

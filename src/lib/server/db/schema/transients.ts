@@ -134,7 +134,9 @@ export const boardRevision = pgTable(
 	'board_revision',
 	{
 		only: boolean('only').notNull().default(true),
-		value: bigint('value', { mode: 'number' }).notNull()
+		value: bigint('value', { mode: 'number' }).notNull(),
+		/** The value at which something all transients share changed last: telescopes, streams, people, the rota. */
+		network: bigint('network', { mode: 'number' }).notNull().default(0)
 	},
 	(table) => [
 		primaryKey({ columns: [table.only] }),

@@ -1,8 +1,7 @@
-import { boardFor } from '$lib/server/transients/board';
+import { boardTextFor } from '$lib/server/transients/board';
 import { currentRevision } from '$lib/server/db/boardRevisions';
 import { requirePermission } from '$lib/server/actor';
 import { answer } from '$lib/server/http/api';
-import { json } from '@sveltejs/kit';
 import type { RequestHandler } from './$types';
 
 /** The board; 304 when nothing changed since the revision in If-None-Match. `?since=` narrows it. */
@@ -19,8 +18,14 @@ export const GET: RequestHandler = ({ locals, request, url }) =>
 			return new Response(null, { status: 304, headers: headers(revision) });
 		}
 		const since = Number(url.searchParams.get('since') ?? 0);
-		const board = await boardFor(locals.app, locals.actor, Number.isSafeInteger(since) ? since : 0);
-		return json(board, { headers: headers(board.revision) });
+		const { text, revision: made } = await boardTextFor(
+			locals.app,
+			locals.actor,
+			Number.isSafeInteger(since) ? since : 0
+		);
+		return new Response(text, {
+			headers: { ...headers(made), 'content-type': 'application/json' }
+		});
 	});
 
 /** If-None-Match as RFC 9110 section 13.1.2 has it: a list of tags, weak ones included, or `*`. */

@@ -1,0 +1,1 @@
+ALTER TABLE "board_revision" ADD COLUMN "network" bigint DEFAULT 0 NOT NULL;
