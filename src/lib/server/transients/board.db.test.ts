@@ -44,11 +44,11 @@ describe('the remembered board', () => {
 		const changes: [string, () => Promise<unknown>][] = [
 			['taken', () => takeTransient(world.app, duty, first)],
 			['decided', () => decideTransient(world.app, duty, first, { decision: 'chase', reason: '' })],
-			['an outlook', () => world.runJobs()],
 			[
 				'an update',
 				() => world.receive(gamma, circlePacket({ serial: 2, shape: circle(83.5, -8, 2) }))
 			],
+			['an outlook', () => world.runJobs()],
 			['the minute', () => Promise.resolve(world.tick(61))],
 			['a stream', () => rename(stream, gamma.streamId, 'Pauke')],
 			['a person', () => rename(person, duty.id, 'Another Name')],
