@@ -2,6 +2,7 @@ import { boardFor } from '$lib/server/transients/board';
 import { currentRevision } from '$lib/server/db/boardRevisions';
 import { requirePermission } from '$lib/server/actor';
 import { answer } from '$lib/server/http/api';
+import { matchesEtag } from '$lib/server/http/etag';
 import { json } from '@sveltejs/kit';
 import type { RequestHandler } from './$types';
 
@@ -15,19 +16,10 @@ export const GET: RequestHandler = ({ locals, request, url }) =>
 			'cache-control': 'private, no-cache',
 			vary: 'Cookie'
 		});
-		if (matches(request.headers.get('if-none-match'), `"${revision}"`)) {
+		if (matchesEtag(request.headers.get('if-none-match'), `"${revision}"`)) {
 			return new Response(null, { status: 304, headers: headers(revision) });
 		}
 		const since = Number(url.searchParams.get('since') ?? 0);
 		const board = await boardFor(locals.app, locals.actor, Number.isSafeInteger(since) ? since : 0);
 		return json(board, { headers: headers(board.revision) });
 	});
-
-/** If-None-Match as RFC 9110 section 13.1.2 has it: a list of tags, weak ones included, or `*`. */
-function matches(header: string | null, tag: string): boolean {
-	if (!header) return false;
-	return header
-		.split(',')
-		.map((item) => item.trim().replace(/^W\//, ''))
-		.some((item) => item === '*' || item === tag);
-}
