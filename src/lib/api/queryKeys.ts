@@ -1,4 +1,6 @@
 /** The only place where query keys exist. */
 export const queryKeys = {
-	board: ['board'] as const
+	board: ['board'] as const,
+	regionOutline: (designation: string, version: number) =>
+		['regionOutline', designation, version] as const
 };

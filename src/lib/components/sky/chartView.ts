@@ -69,6 +69,19 @@ export function skyPath(view: ChartView, points: readonly Equatorial[]): string 
 	);
 }
 
+/**
+ * SVG path of the area inside closed rings that run counterclockwise as seen on the sky, which is d3-geo's
+ * sense of inside. All of them in one polygon: their sense tells pieces from holes, to the far side of the sky.
+ */
+export function areaPath(view: ChartView, rings: readonly (readonly Equatorial[])[]): string {
+	return (
+		view.path({
+			type: 'Polygon',
+			coordinates: rings.map((ring) => ring.map(({ raDeg, decDeg }) => [raDeg, decDeg]))
+		}) ?? ''
+	);
+}
+
 const BARS_DEG = [
 	60,
 	30,

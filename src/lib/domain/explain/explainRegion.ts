@@ -40,6 +40,14 @@ export function explainArea(transient: BoardTransient, region: BoardRegion): Exp
 				label: '90 % region',
 				text: `The smallest area that holds 90 % of the probability: ${formatArea(region.area90Deg2)}, as large as a circle of radius ${formatAngle(region.equivalentRadiusDeg)}. Half of it is in ${formatArea(region.area50Deg2)}.`
 			},
+			...(region.method === 'closed'
+				? []
+				: [
+						{
+							label: 'In the chart',
+							text: 'The region’s own outline, to the cells of the mesh; the darker area holds half. A circle with a broken outline stands for it, equal in area, while the outline is not there.'
+						}
+					]),
 			...(before
 				? [
 						{

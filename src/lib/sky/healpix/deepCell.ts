@@ -8,8 +8,9 @@ import type { Vector } from '../vector';
 /** A cell by base pixel (0 to 11) and column and row in it, north-east and north-west. */
 export type FaceCell = { face: number; x: number; y: number };
 
-const FACE_COLUMN = [1, 3, 5, 7, 0, 2, 4, 6, 1, 3, 5, 7];
-const FACE_ROW = [2, 2, 2, 2, 3, 3, 3, 3, 4, 4, 4, 4];
+/** Column and row of each base pixel: its southern corner lies at column · 45° and on ring row · nside. */
+export const FACE_COLUMN = [1, 3, 5, 7, 0, 2, 4, 6, 1, 3, 5, 7];
+export const FACE_ROW = [2, 2, 2, 2, 3, 3, 3, 3, 4, 4, 4, 4];
 const TWO_16 = 0x10000;
 const TWO_32 = 0x100000000;
 

@@ -58,13 +58,19 @@ export function mocFromCells(cells: { order: number; pixel: number }[]): MocRang
 	return ranges;
 }
 
+/** The set grown to whole cells of `order` (0 to 29); in normal form. */
+export function grownToOrder(set: MocRanges, order: number): MocRanges {
+	const bits = BigInt(2 * (MOC_ORDER - order));
+	return normalForm(
+		set.map(([start, end]) => [(start >> bits) << bits, -((-end >> bits) << bits)])
+	);
+}
+
 /** The set grown to whole cells of coarser orders until it has at most `maxRanges` ranges (at least 12). */
 export function coarsened(set: MocRanges, maxRanges: number): MocRanges {
 	let grown = set;
-	for (let bits = 2n; grown.length > Math.max(12, maxRanges); bits += 2n) {
-		grown = normalForm(
-			set.map(([start, end]) => [(start >> bits) << bits, -((-end >> bits) << bits)])
-		);
+	for (let order = MOC_ORDER - 1; grown.length > Math.max(12, maxRanges); order--) {
+		grown = grownToOrder(set, order);
 	}
 	return grown;
 }

@@ -2,6 +2,7 @@ import { boardTextFor } from '$lib/server/transients/board';
 import { currentRevision } from '$lib/server/db/boardRevisions';
 import { requirePermission } from '$lib/server/actor';
 import { answer } from '$lib/server/http/api';
+import { matchesEtag } from '$lib/server/http/etag';
 import type { RequestHandler } from './$types';
 
 /** The board; 304 when nothing changed since the revision in If-None-Match. `?since=` narrows it. */
@@ -14,7 +15,7 @@ export const GET: RequestHandler = ({ locals, request, url }) =>
 			'cache-control': 'private, no-cache',
 			vary: 'Cookie'
 		});
-		if (matches(request.headers.get('if-none-match'), `"${revision}"`)) {
+		if (matchesEtag(request.headers.get('if-none-match'), `"${revision}"`)) {
 			return new Response(null, { status: 304, headers: headers(revision) });
 		}
 		const since = Number(url.searchParams.get('since') ?? 0);
@@ -27,12 +28,3 @@ export const GET: RequestHandler = ({ locals, request, url }) =>
 			headers: { ...headers(made), 'content-type': 'application/json' }
 		});
 	});
-
-/** If-None-Match as RFC 9110 section 13.1.2 has it: a list of tags, weak ones included, or `*`. */
-function matches(header: string | null, tag: string): boolean {
-	if (!header) return false;
-	return header
-		.split(',')
-		.map((item) => item.trim().replace(/^W\//, ''))
-		.some((item) => item === '*' || item === tag);
-}

@@ -1,28 +1,10 @@
 import { describe, expect, it } from 'vitest';
-import { coneMoc } from '../moc/coneMoc';
 import { separationDeg } from '../vector';
-import { cellPolygons } from './cellPolygons';
 import { fisherPoints, regionOutlinePoints } from './regionPoints';
 
 const centre = { raDeg: 359.9, decDeg: 62 };
 
 describe('drawing a region', () => {
-	it('gives four corners for every cell, all near the region', () => {
-		const polygons = cellPolygons(coneMoc(centre, 3));
-		expect(polygons.length).toBeGreaterThan(50);
-		for (const polygon of polygons) {
-			expect(polygon).toHaveLength(4);
-			for (const corner of polygon) expect(separationDeg(corner, centre)).toBeLessThan(3.5);
-		}
-	});
-
-	it('merges cells until few enough are left', () => {
-		const few = cellPolygons(coneMoc(centre, 3), 40);
-		expect(few.length).toBeLessThanOrEqual(40);
-		expect(few.length).toBeGreaterThan(4);
-		expect(cellPolygons([], 40)).toEqual([]);
-	});
-
 	it('puts a circle at its radius', () => {
 		const outline = regionOutlinePoints(centre, 2 / 3600, 24);
 		expect(outline).toHaveLength(24);
