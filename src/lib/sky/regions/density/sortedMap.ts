@@ -1,5 +1,5 @@
-import { cellAreaSr, fromUniq } from '../../healpix/healpix';
-import type { MapShape } from '../shape';
+import { CELL_ORDER_MAX, cellAreaSr, fromUniq } from '../../healpix/healpix';
+import { MapFault } from '../mapFault';
 
 /** Cells in order of position: index ranges at the map's finest order, their density and probability. */
 export type SortedMap = {
@@ -14,41 +14,69 @@ export type SortedMap = {
 	before: Float64Array;
 };
 
-/** A multi-order map sorted, checked and normalised; throws a RangeError that names what is wrong. */
-export function sortedMap({ uniq, density: given }: MapShape): SortedMap {
+/** Cells in any order: UNIQ numbers and densities. */
+export type MapCells = { uniq: ArrayLike<number>; density: ArrayLike<number> };
+
+const UNIQ_END = 16 * 4 ** CELL_ORDER_MAX;
+
+/** A multi-order map sorted, checked and normalised; throws a MapFault that names what is wrong. */
+export function sortedMap({ uniq, density: given }: MapCells): SortedMap {
 	const count = uniq.length;
 	if (count === 0 || given.length !== count) {
-		throw new RangeError(
-			`map has ${count} uniq and ${given.length} density; it must have equally many, above 0`
+		throw new MapFault(
+			'density',
+			null,
+			`has ${given.length} values for ${count} uniq; it must have equally many, above 0`
 		);
 	}
 	const { order, orders: givenOrders, index, starts } = placesOf(uniq);
-	const orders = new Uint8Array(count);
-	const ends = new Float64Array(count);
-	const density = new Float64Array(count);
+	const orders = Uint8Array.from(index, (from) => givenOrders[from] ?? 0);
+	const density = Float64Array.from(index, (from) => checkedDensity('density', given, from));
+	for (let i = 1; i < count; i++) {
+		const end = (starts[i - 1] ?? 0) + 4 ** (order - (orders[i - 1] ?? 0));
+		if (end > (starts[i] ?? 0)) {
+			const from = index[i] ?? 0;
+			throw new MapFault('uniq', from, `is ${uniq[from]}; it overlaps another cell of the map`);
+		}
+	}
+	return normalisedMap(order, orders, starts, density);
+}
+
+/** One density or probability of a map, which must be finite and not negative. */
+export function checkedDensity(
+	field: 'density' | 'probability',
+	values: ArrayLike<number>,
+	i: number
+): number {
+	const value = values[i] ?? NaN;
+	if (value >= 0 && value < Infinity) return value;
+	throw new MapFault(field, i, `is ${value}; it must be finite and at least 0`);
+}
+
+/** Sorted disjoint cells as a map; `density`, in any unit, becomes normalised in place. */
+export function normalisedMap(
+	order: number,
+	orders: Uint8Array,
+	starts: Float64Array,
+	density: Float64Array
+): SortedMap {
+	const count = starts.length;
+	const ends = starts.map((start, i) => start + 4 ** (order - (orders[i] ?? 0)));
 	const before = new Float64Array(count + 1);
 	for (let i = 0; i < count; i++) {
-		const from = index[i] ?? 0;
-		const cellOrder = givenOrders[from] ?? 0;
-		const value = given[from] ?? NaN;
-		if (!(value >= 0 && value < Infinity)) {
-			throw new RangeError(`density[${from}] is ${value}; it must be finite and at least 0`);
-		}
-		const start = starts[i] ?? 0;
-		if (i > 0 && (ends[i - 1] ?? 0) > start) {
-			throw new RangeError(`uniq[${from}] is ${uniq[from]}; it overlaps another cell of the map`);
-		}
-		orders[i] = cellOrder;
-		ends[i] = start + 4 ** (order - cellOrder);
-		density[i] = value;
-		before[i + 1] = (before[i] ?? 0) + value * cellAreaSr(cellOrder);
+		before[i + 1] = (before[i] ?? 0) + (density[i] ?? 0) * cellAreaSr(orders[i] ?? 0);
 	}
-	const total = before[count] ?? 0;
-	if (!(total > 0)) throw new RangeError('density is 0 everywhere; a map must hold probability');
-	if (total === Infinity) throw new RangeError('density is so large that its sum is not finite');
+	const total = checkedTotal('density', before[count] ?? 0);
 	for (let i = 0; i < count; i++) density[i] = (density[i] ?? 0) / total;
 	for (let i = 0; i <= count; i++) before[i] = (before[i] ?? 0) / total;
 	return { order, orders, starts, ends, density, before };
+}
+
+/** The sum of a map's values, which must be finite and above 0. */
+export function checkedTotal(field: 'density' | 'probability', total: number): number {
+	if (!(total > 0)) throw new MapFault(field, null, 'is 0 everywhere; a map must hold probability');
+	if (total === Infinity) throw new MapFault(field, null, 'is so large that its sum overflows');
+	return total;
 }
 
 /** Orders as given; the index that sorts the cells, and their first indices at the finest order in that order. */
@@ -58,7 +86,15 @@ function placesOf(uniq: ArrayLike<number>) {
 	const pixels = new Float64Array(count);
 	let order = 0;
 	for (let i = 0; i < count; i++) {
-		const cell = fromUniq(uniq[i] ?? NaN);
+		const value = uniq[i] ?? NaN;
+		if (!(Number.isSafeInteger(value) && value >= 4 && value < UNIQ_END)) {
+			throw new MapFault(
+				'uniq',
+				i,
+				`is ${value}; it must be a whole number from 4 to 16 · 4^24 − 1`
+			);
+		}
+		const cell = fromUniq(value);
 		orders[i] = cell.order;
 		pixels[i] = cell.pixel;
 		if (cell.order > order) order = cell.order;
