@@ -13,6 +13,7 @@ import type { Role, StreamClass } from '../../src/lib/domain/vocabulary';
 import { computeOutlook } from '../../src/lib/sky/outlook/computeOutlook';
 import { searchedRegion } from '../../src/lib/sky/catch/searchedRegion';
 import { jointRegion } from '../../src/lib/sky/regions/jointRegion';
+import { mapShape } from '../../src/compute';
 import { createTestDatabase } from './testDatabase';
 
 /** A winter night in which Cerro Almendra (30° S, 70° W) is dark and Orion is up. */
@@ -48,6 +49,7 @@ export async function openWorld(start = NIGHT) {
 			jointRegion: (parts) => Promise.resolve(jointRegion(parts)),
 			searchedRegion: ({ shapes, reports, t0Ms, fade }) =>
 				Promise.resolve(searchedRegion(shapes, reports, t0Ms, fade)),
+			mapShape: (source) => Promise.resolve(mapShape(source)),
 			close: () => Promise.resolve()
 		},
 		now: () => new Date(nowMs)

@@ -32,6 +32,7 @@ async function main(): Promise<void> {
 			queue: bossQueue(boss),
 			compute: {
 				jointRegion: async (parts) => jointRegion(parts),
+				mapShape: () => Promise.reject(new Error('the demo has no maps')),
 				searchedRegion: async ({ shapes, reports, t0Ms, fade }) =>
 					searchedRegion(shapes, reports, t0Ms, fade),
 				outlook: () => Promise.reject(new Error('the seed leaves outlooks to the workers')),

@@ -6,7 +6,9 @@ import type { NotFound } from '../../sky/catch/looks';
 import type { SearchedRegion } from '../../sky/catch/searchedRegion';
 import type { FadeModel, OutlookInput, Outlook } from '../../sky/outlook/outlook';
 import type { JointRegion } from '../../sky/regions/jointRegion';
-import type { Shape } from '../../sky/regions/shape';
+import type { MapField } from '../../sky/regions/mapFault';
+import type { MapSource } from '../../sky/regions/mapShapeFrom';
+import type { MapShape, Shape } from '../../sky/regions/shape';
 
 /** The arguments of `searchedRegion`, in one piece for a thread. */
 export type SearchInput = {
@@ -16,11 +18,16 @@ export type SearchInput = {
 	fade: FadeModel;
 };
 
+/** A map in its normal form, or what is wrong with it. */
+export type MapAnswer =
+	{ shape: MapShape } | { fault: { field: MapField; entry: number | null; detail: string } };
+
 /** The heavy computations, off the web process's event loop. */
 export type ComputePool = {
 	outlook: (input: OutlookInput) => Promise<Outlook>;
 	jointRegion: (parts: Shape[]) => Promise<JointRegion>;
 	searchedRegion: (input: SearchInput) => Promise<SearchedRegion>;
+	mapShape: (source: MapSource) => Promise<MapAnswer>;
 	close: () => Promise<void>;
 };
 
@@ -40,6 +47,7 @@ export function createComputePool(threads: number): ComputePool {
 		outlook: (input) => pool.run(input, { name: 'outlook' }) as Promise<Outlook>,
 		jointRegion: (parts) => pool.run(parts, { name: 'joint' }) as Promise<JointRegion>,
 		searchedRegion: (input) => pool.run(input, { name: 'searched' }) as Promise<SearchedRegion>,
+		mapShape: (source) => pool.run(source, { name: 'mapShape' }) as Promise<MapAnswer>,
 		close: () => pool.destroy()
 	};
 }

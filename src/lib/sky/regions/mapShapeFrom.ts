@@ -9,7 +9,7 @@ import {
 } from './density/sortedMap';
 import { leanMap, type LeanMap } from './leanMap';
 import { MapFault } from './mapFault';
-import type { MapShape } from './shape';
+import { FLAT_ORDER_MAX, type MapShape } from './shape';
 import { turnedMap } from './turnedMap';
 
 /** Frame in which a map's cells are numbered. */
@@ -27,8 +27,6 @@ export type MultiOrderMap = MapCells & { frame?: MapFrame };
 /** A probability map as it is given. */
 export type MapSource = FlatMap | MultiOrderMap;
 
-/** Finest flat map: nside 2048, 50 million pixels. */
-export const FLAT_ORDER_MAX = 11;
 /** Most cells of the normal form. */
 export const MAP_CELLS_MAX = 100_000;
 /** Significant digits of the densities: a half of a digit in the last one is 5e-8 at most. */
