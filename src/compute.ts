@@ -7,11 +7,14 @@ import { computeOutlook } from './lib/sky/outlook/computeOutlook';
 import type { FadeModel, Outlook, OutlookInput } from './lib/sky/outlook/outlook';
 import { jointRegion } from './lib/sky/regions/jointRegion';
 import type { JointRegion } from './lib/sky/regions/jointRegion';
-import type { Shape } from './lib/sky/regions/shape';
+import { MapFault, type MapField } from './lib/sky/regions/mapFault';
+import { mapShapeFrom, type MapSource } from './lib/sky/regions/mapShapeFrom';
+import type { MapShape, Shape } from './lib/sky/regions/shape';
 
 // On Linux a priority belongs to a thread: where cores are few, answers to people go first.
 if (!isMainThread) setPriority(constants.priority.PRIORITY_BELOW_NORMAL);
 
+export { mocOutline as outline } from './lib/sky/moc/mocOutline';
 export { outlookText } from './lib/server/outlook/outlookText';
 
 export function outlook(input: OutlookInput): Outlook {
@@ -20,6 +23,19 @@ export function outlook(input: OutlookInput): Outlook {
 
 export function joint(parts: Shape[]): JointRegion {
 	return jointRegion(parts);
+}
+
+/** What is wrong is part of the answer, as an error loses its fields on the way out of a thread. */
+export function mapShape(
+	source: MapSource
+): { shape: MapShape } | { fault: { field: MapField; entry: number | null; detail: string } } {
+	try {
+		return { shape: mapShapeFrom(source) };
+	} catch (error) {
+		if (!(error instanceof MapFault)) throw error;
+		const { field, entry, detail } = error;
+		return { fault: { field, entry, detail } };
+	}
 }
 
 export function searched(input: {

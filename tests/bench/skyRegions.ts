@@ -1,13 +1,12 @@
-import { cellCentre } from '../../src/lib/sky/healpix/healpix';
 import { jointRegion } from '../../src/lib/sky/regions/jointRegion';
-import type { CircleShape, MapShape, Shape } from '../../src/lib/sky/regions/shape';
-import { separationDeg } from '../../src/lib/sky/vector';
+import type { CircleShape, Shape } from '../../src/lib/sky/regions/shape';
+import { gaussianMap } from './gaussianMap';
 import type { BenchRow } from './run';
 
 /** Median times of joint regions, coverage maps and points included. */
 export default function skyRegions(): Promise<BenchRow[]> {
 	const circles = [circle(83, -8, 3), circle(84, -7, 2), circle(83.5, -7.6, 2 / 60)];
-	const map = gaussianMap(10, 500);
+	const map = gaussianMap(10, 500, { raDeg: 83, decDeg: -8 });
 	return Promise.resolve([
 		['joint_circles_ms', medianMs(circles, 200), 'ms'],
 		['joint_map_ms', medianMs([map, circle(85, -6, 3)], 15), 'ms'],
@@ -35,23 +34,4 @@ function processorMs(): number {
 
 function circle(raDeg: number, decDeg: number, radiusDeg: number): CircleShape {
 	return { kind: 'circle', centre: { raDeg, decDeg }, radiusDeg, containment: 0.9 };
-}
-
-/** A Gaussian map with cells of `finest` order inside its area of `areaDeg2`, coarse ones outside. */
-function gaussianMap(finest: number, areaDeg2: number): MapShape {
-	const middle = { raDeg: 83, decDeg: -8 };
-	const edgeDeg = Math.sqrt(areaDeg2 / Math.PI);
-	const sigmaDeg = edgeDeg / 2.146;
-	const map: MapShape = { kind: 'map', uniq: [], density: [] };
-	const add = (order: number, pixel: number) => {
-		const distanceDeg = separationDeg(cellCentre(order, pixel), middle);
-		if (order < finest && distanceDeg < edgeDeg + 60 / 2 ** order) {
-			for (let child = 0; child < 4; child++) add(order + 1, 4 * pixel + child);
-			return;
-		}
-		map.uniq.push(4 * 4 ** order + pixel);
-		map.density.push(Math.exp(-((distanceDeg / sigmaDeg) ** 2) / 2));
-	};
-	for (let pixel = 0; pixel < 12; pixel++) add(0, pixel);
-	return map;
 }

@@ -14,6 +14,8 @@ import { outlookText } from '../../src/lib/server/outlook/outlookText';
 import { computeOutlook } from '../../src/lib/sky/outlook/computeOutlook';
 import { searchedRegion } from '../../src/lib/sky/catch/searchedRegion';
 import { jointRegion } from '../../src/lib/sky/regions/jointRegion';
+import { mapShape } from '../../src/compute';
+import { mocOutline } from '../../src/lib/sky/moc/mocOutline';
 import { createTestDatabase } from './testDatabase';
 
 /** A winter night in which Cerro Almendra (30° S, 70° W) is dark and Orion is up. */
@@ -50,6 +52,8 @@ export async function openWorld(start = NIGHT) {
 			jointRegion: (parts) => Promise.resolve(jointRegion(parts)),
 			searchedRegion: ({ shapes, reports, t0Ms, fade }) =>
 				Promise.resolve(searchedRegion(shapes, reports, t0Ms, fade)),
+			outline: (moc) => Promise.resolve(mocOutline(moc)),
+			mapShape: (source) => Promise.resolve(mapShape(source)),
 			close: () => Promise.resolve()
 		},
 		now: () => new Date(nowMs)

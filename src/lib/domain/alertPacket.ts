@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { mapSchema } from './mapPacket';
 import { ALERT_KINDS, ALERT_ROLES, CITATION_RELATIONS } from './vocabulary';
 
 const finite = (low: number, high: number) => z.number().min(low).max(high);
@@ -47,7 +48,8 @@ export const shapeSchema = z.discriminatedUnion('kind', [
 	z.strictObject({
 		kind: z.literal('polygon'),
 		vertices: z.array(equatorialSchema).min(3).max(200)
-	})
+	}),
+	mapSchema
 ]);
 
 const packetId = z

@@ -1,4 +1,5 @@
 import type PgBoss from 'pg-boss';
+import { fillAlertSkyJob } from './alerts/fillAlertSkyJob';
 import type { App } from './app';
 import { config } from './config';
 import { followRevisions } from './db/boardRevisions';
@@ -32,6 +33,8 @@ export async function startRuntime(): Promise<Runtime> {
 		compute,
 		now: () => new Date()
 	};
+	// Alerts of earlier versions have no sky of their own yet.
+	await app.queue.enqueue(app.database, fillAlertSkyJob, {});
 	const stopFollowing = settings.role === 'worker' ? async () => {} : await followRevisions(app);
 	const stopWorkers = settings.role === 'web' ? async () => {} : await runWorkers(app, boss);
 	logger.info({ role: settings.role, origin: settings.origin }, 'duskline started');

@@ -13,7 +13,9 @@ import { writeJournal } from '../transients/journalStore';
 import { deriveRegion } from '../transients/regionService';
 import type { AuthenticatedStream } from '../streams/streamKeyService';
 import { findPacket, lockTriage, withdrawAlerts, type AlertRow } from './alertStore';
-import { alertSky } from './alertSky';
+import { circleSky } from './alertSky';
+import { fillAlertSkyJob } from './fillAlertSkyJob';
+import { normalShape } from './normalShape';
 import { placeAlert, type Placement } from './association';
 
 /** What the sender is told: the same for the first packet and for every copy of it. */
@@ -42,6 +44,7 @@ export async function receiveAlert(
 	const { packet, body } = received;
 	const known = await findPacket(app.database, source.streamId, packet.packetId, packet.serial);
 	if (known) return sameOrConflict(known, received, source);
+	const shape = await normalShape(app, packet.shape);
 	return writeTransaction(app, async (tx, change) => {
 		await lockTriage(tx);
 		// A copy may have come in while this one waited for the lock.
@@ -58,7 +61,7 @@ export async function receiveAlert(
 			alertsPerYear: settings.alertsPerYear,
 			coincidenceWindowS: settings.coincidenceWindowS,
 			t0,
-			shape: packet.shape ?? null
+			shape
 		});
 		const [raw] = await tx
 			.insert(packetTable)
@@ -83,8 +86,8 @@ export async function receiveAlert(
 				cites: packet.cites,
 				t0,
 				receivedAt,
-				shape: packet.shape ?? null,
-				moc90: alertSky(packet.shape ?? null),
+				shape,
+				moc90: circleSky(shape),
 				significance: packet.significance ?? null,
 				falseAlarmPerYear: packet.falseAlarmPerYear ?? null,
 				remarks: packet.remarks,
@@ -94,6 +97,7 @@ export async function receiveAlert(
 				live: placement.live
 			})
 			.returning();
+		if (shape && !row!.moc90) await app.queue.enqueue(tx, fillAlertSkyJob, {});
 		await withdrawAlerts(
 			tx,
 			placement.withdrawn.map((item) => item.id)

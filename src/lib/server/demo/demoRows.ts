@@ -1,6 +1,6 @@
 import { createHash, randomUUID } from 'node:crypto';
 import { eq } from 'drizzle-orm';
-import { alertSky } from '../alerts/alertSky';
+import { circleSky } from '../alerts/alertSky';
 import type { Transaction } from '../db/database';
 import { alert, packet, stream } from '../db/schema/alerts';
 import { report, slot } from '../db/schema/slots';
@@ -156,7 +156,7 @@ async function insertAlerts(
 				t0: new Date(t0),
 				receivedAt: new Date(one.receivedMs),
 				shape: shape ?? null,
-				moc90: alertSky(shape ?? null),
+				moc90: circleSky(shape ?? null),
 				significance: one.packet.significance ?? null,
 				falseAlarmPerYear: one.packet.falseAlarmPerYear ?? null,
 				remarks,

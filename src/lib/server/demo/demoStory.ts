@@ -17,7 +17,10 @@ export const STORY_KINDS = [
 ] as const;
 export type StoryKind = (typeof STORY_KINDS)[number];
 
-export type StoryPacket = { stream: DemoStreamCode; packet: AlertPacket; receivedMs: number };
+/** The demo's streams send circles only. */
+type CirclePacket = Omit<AlertPacket, 'shape'> & { shape?: CircleShape };
+
+export type StoryPacket = { stream: DemoStreamCode; packet: CirclePacket; receivedMs: number };
 
 /** One invented transient: what is really in the sky and what the instruments said of it. */
 export type Story = {
@@ -57,7 +60,7 @@ export function planStory(random: DemoRandom, plan: StoryPlan): Story {
 		stream: DemoStreamCode,
 		afterS: number,
 		radiusDeg: number | null,
-		more: Partial<AlertPacket> = {}
+		more: Partial<CirclePacket> = {}
 	) => {
 		atMs += afterS * 1000;
 		packets.push({
@@ -78,7 +81,7 @@ export function planStory(random: DemoRandom, plan: StoryPlan): Story {
 			}
 		});
 	};
-	const citing = (stream: DemoStreamCode): Partial<AlertPacket> => ({
+	const citing = (stream: DemoStreamCode): Partial<CirclePacket> => ({
 		cites: [{ stream, packetId: packetIdOf(stream, t0Ms), relation: 'followup' }]
 	});
 

@@ -17,7 +17,7 @@ const UNUSED = {
 };
 
 /** Seeds the database named by DATABASE_URL; stream keys go to the file named by DUSKLINE_DEMO_KEYS_FILE. */
-const leftToWorkers = () => Promise.reject(new Error('the seed leaves outlooks to the workers'));
+const leftToWorkers = () => Promise.reject(new Error('the seed leaves it to the workers'));
 
 async function main(): Promise<void> {
 	const config = parseConfig({ ...UNUSED, ...process.env });
@@ -34,6 +34,8 @@ async function main(): Promise<void> {
 			queue: bossQueue(boss),
 			compute: {
 				jointRegion: async (parts) => jointRegion(parts),
+				outline: leftToWorkers,
+				mapShape: () => Promise.reject(new Error('the demo has no maps')),
 				searchedRegion: async ({ shapes, reports, t0Ms, fade }) =>
 					searchedRegion(shapes, reports, t0Ms, fade),
 				outlook: leftToWorkers,

@@ -1,3 +1,4 @@
+import { fillAlertSkyJob } from '../alerts/fillAlertSkyJob';
 import { deliverCircularJob } from '../circulars/deliverCircularJob';
 import { failForgottenDeliveriesJob } from '../circulars/failForgottenDeliveriesJob';
 import { refreshOutlookJob } from '../outlook/refreshOutlookJob';
@@ -7,6 +8,7 @@ import type { Job } from './queue';
 
 /** Every kind of job. The payload type is each job's own business. */
 export const ALL_JOBS = [
+	fillAlertSkyJob,
 	refreshOutlookJob,
 	refreshOutlooksJob,
 	deliverCircularJob,

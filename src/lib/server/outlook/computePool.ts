@@ -2,11 +2,15 @@ import { existsSync } from 'node:fs';
 import { resolve } from 'node:path';
 import { pathToFileURL } from 'node:url';
 import { Piscina } from 'piscina';
+import type { Rings } from '../../domain/regionOutline';
 import type { NotFound } from '../../sky/catch/looks';
 import type { SearchedRegion } from '../../sky/catch/searchedRegion';
 import type { FadeModel, OutlookInput, Outlook } from '../../sky/outlook/outlook';
 import type { JointRegion } from '../../sky/regions/jointRegion';
-import type { Shape } from '../../sky/regions/shape';
+import type { MocRanges } from '../../sky/moc/moc';
+import type { MapField } from '../../sky/regions/mapFault';
+import type { MapSource } from '../../sky/regions/mapShapeFrom';
+import type { MapShape, Shape } from '../../sky/regions/shape';
 import type { OutlookText } from './outlookText';
 
 /** The arguments of `searchedRegion`, in one piece for a thread. */
@@ -17,6 +21,10 @@ export type SearchInput = {
 	fade: FadeModel;
 };
 
+/** A map in its normal form, or what is wrong with it. */
+export type MapAnswer =
+	{ shape: MapShape } | { fault: { field: MapField; entry: number | null; detail: string } };
+
 /** The heavy computations, off the web process's event loop. */
 export type ComputePool = {
 	outlook: (input: OutlookInput) => Promise<Outlook>;
@@ -24,8 +32,14 @@ export type ComputePool = {
 	outlookText: (input: OutlookInput) => Promise<OutlookText>;
 	jointRegion: (parts: Shape[]) => Promise<JointRegion>;
 	searchedRegion: (input: SearchInput) => Promise<SearchedRegion>;
+	mapShape: (source: MapSource) => Promise<MapAnswer>;
+	/** Closed rings around a coverage map. */
+	outline: (moc: MocRanges) => Promise<Rings>;
 	close: () => Promise<void>;
 };
+
+/** A thread that has read a map gives its memory back after this long. */
+const READER_IDLE_MS = 30_000;
 
 /** Worker threads that run `build-workers/compute.js`; idle ones stay, so that they keep warm. */
 export function createComputePool(threads: number): ComputePool {
@@ -33,17 +47,24 @@ export function createComputePool(threads: number): ComputePool {
 	if (!existsSync(filename)) {
 		throw new Error('build-workers/compute.js is missing: run npm run build:workers first');
 	}
-	const pool = new Piscina({
-		filename: pathToFileURL(filename).href,
-		minThreads: 1,
-		maxThreads: threads,
-		idleTimeout: Infinity
+	const options = { filename: pathToFileURL(filename).href, minThreads: 1 };
+	const pool = new Piscina({ ...options, maxThreads: threads, idleTimeout: Infinity });
+	// Reading a map takes seconds: nobody's outlook waits behind it.
+	const reader = new Piscina({
+		...options,
+		minThreads: 0,
+		maxThreads: 1,
+		idleTimeout: READER_IDLE_MS
 	});
 	return {
 		outlook: (input) => pool.run(input, { name: 'outlook' }) as Promise<Outlook>,
 		outlookText: (input) => pool.run(input, { name: 'outlookText' }) as Promise<OutlookText>,
 		jointRegion: (parts) => pool.run(parts, { name: 'joint' }) as Promise<JointRegion>,
 		searchedRegion: (input) => pool.run(input, { name: 'searched' }) as Promise<SearchedRegion>,
-		close: () => pool.destroy()
+		mapShape: (source) => reader.run(source, { name: 'mapShape' }) as Promise<MapAnswer>,
+		outline: (moc) => pool.run(moc, { name: 'outline' }) as Promise<Rings>,
+		close: async () => {
+			await Promise.all([pool.destroy(), reader.destroy()]);
+		}
 	};
 }

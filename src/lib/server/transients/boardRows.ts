@@ -9,6 +9,7 @@ import type {
 } from '../../domain/board';
 import type { Outlook } from '../../sky/outlook/outlook';
 import { alertColumns, type AlertWithoutSky } from '../alerts/alertSky';
+import { shownShape } from '../alerts/shownShape';
 import type { Executor } from '../db/database';
 import { alert, stream } from '../db/schema/alerts';
 import { report, slot } from '../db/schema/slots';
@@ -167,7 +168,7 @@ function boardPart(item: {
 			receivedAt: item.alert.receivedAt.toISOString(),
 			membership: item.alert.membership,
 			logOdds: item.alert.logOdds,
-			shape: item.alert.shape
+			shape: shownShape(item.alert.shape)
 		}
 	];
 }

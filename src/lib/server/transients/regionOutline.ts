@@ -1,9 +1,10 @@
 import { and, eq } from 'drizzle-orm';
 import type { RegionOutline, Rings } from '../../domain/regionOutline';
-import { mocOutline } from '../../sky/moc/mocOutline';
+import type { MocRanges } from '../../sky/moc/moc';
 import { separationDeg } from '../../sky/vector';
 import { requirePermission, type Actor } from '../actor';
 import type { App } from '../app';
+import type { Database } from '../db/database';
 import { region } from '../db/schema/transients';
 import { DomainError } from '../domainError';
 import { requireTransient } from './transientStore';
@@ -28,22 +29,41 @@ export async function regionVersion(
 	return { transientId: row.id, version };
 }
 
-/** One version of a joint region, to draw; it never changes. */
-export async function regionOutline(
+/** Per process and database: the outlines asked for last. A version never changes. */
+const known = new WeakMap<Database, Map<string, Promise<RegionOutline>>>();
+const MOST_KNOWN = 50;
+
+/** One version of a joint region, to draw; made once, in a compute thread. */
+export function regionOutline(
 	app: App,
 	actor: Actor | null,
 	{ transientId, version }: { transientId: string; version: number }
 ): Promise<RegionOutline> {
 	requirePermission(actor, 'viewBoard');
+	const outlines = known.get(app.database) ?? new Map<string, Promise<RegionOutline>>();
+	known.set(app.database, outlines);
+	const key = `${transientId} ${version}`;
+	let made = outlines.get(key);
+	if (!made) {
+		made = makeOutline(app, transientId, version);
+		outlines.set(key, made);
+		made.catch(() => outlines.delete(key));
+		if (outlines.size > MOST_KNOWN) outlines.delete(outlines.keys().next().value!);
+	}
+	return made;
+}
+
+async function makeOutline(app: App, transientId: string, version: number): Promise<RegionOutline> {
 	const [row] = await app.database
 		.select({ moc50: region.moc50, moc90: region.moc90 })
 		.from(region)
 		.where(and(eq(region.transientId, transientId), eq(region.version, version)));
 	if (!row) throw new DomainError('notFound', 'There is no such version of the region.');
+	const outlineOf = async (moc: MocRanges) => rounded(await app.compute.outline(moc));
 	return {
 		version,
-		outline50: rounded(mocOutline(row.moc50)),
-		outline90: rounded(mocOutline(row.moc90))
+		outline50: await outlineOf(row.moc50),
+		outline90: await outlineOf(row.moc90)
 	};
 }
 

@@ -5,6 +5,7 @@ import { coneMoc } from '../../sky/moc/coneMoc';
 import type { MocRanges } from '../../sky/moc/moc';
 import { angleBetweenDeg, toVector } from '../../sky/vector';
 import { requirePermission, type Actor } from '../actor';
+import { alertSky } from '../alerts/alertSky';
 import type { App } from '../app';
 import type { Executor } from '../db/database';
 import { alert, stream } from '../db/schema/alerts';
@@ -92,7 +93,7 @@ function touches(cells: SQL, credible: 50 | 90): SQL | undefined {
 
 /**
  * Alerts whose own 90 % area overlaps this alert's, newest T0 first, 500 at most; withdrawn ones are among
- * them, marked. Null when this one's area is not kept: only circles' are.
+ * them, marked. Null for a retraction, which has no area.
  *
  * @throws DomainError `notFound` when there is no such alert.
  */
@@ -103,12 +104,14 @@ export async function alertsOverlapping(
 ): Promise<OverlappingAlert[] | null> {
 	requirePermission(actor, 'viewTransients');
 	const [own] = await app.database
-		.select({ moc90: alert.moc90 })
+		.select({ moc90: alert.moc90, shape: alert.shape })
 		.from(alert)
 		.where(eq(alert.id, alertId));
 	if (!own) throw new DomainError('notFound', 'There is no such alert.');
-	if (!own.moc90) return null;
-	const rows = await overlappingRows(app.database, alertId, own.moc90);
+	// The job that works it out for good may not have come to it yet.
+	const moc90 = own.moc90 ?? (own.shape ? await alertSky(app, own.shape) : null);
+	if (!moc90) return null;
+	const rows = await overlappingRows(app.database, alertId, moc90);
 	return rows.map(({ t0, ...row }) => ({ ...row, t0: t0.toISOString() }));
 }
 

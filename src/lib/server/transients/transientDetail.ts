@@ -6,6 +6,7 @@ import type { Shape } from '../../sky/regions/shape';
 import type { JointRegion } from '../../sky/regions/jointRegion';
 import { requirePermission, type Actor } from '../actor';
 import { alertColumns } from '../alerts/alertSky';
+import { shownShape } from '../alerts/shownShape';
 import type { App } from '../app';
 import { alert, packet, stream } from '../db/schema/alerts';
 import { circular } from '../db/schema/circulars';
@@ -127,7 +128,7 @@ export async function transientDetail(
 			live: item.alert.live,
 			membership: item.alert.membership,
 			logOdds: item.alert.logOdds,
-			shape: item.alert.shape,
+			shape: item.alert.shape && shownShape(item.alert.shape),
 			significance: item.alert.significance,
 			falseAlarmPerYear: item.alert.falseAlarmPerYear,
 			remarks: item.alert.remarks,

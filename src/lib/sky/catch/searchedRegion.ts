@@ -2,7 +2,7 @@ import type { FadeModel } from '../outlook/outlook';
 import { cellAreaSr } from '../healpix/healpix';
 import { canonicalOrder } from '../regions/canonicalOrder';
 import { closedRegion } from '../regions/closedRegion';
-import { jointRegion, type JointRegion } from '../regions/jointRegion';
+import { jointRegion, mapAlone, type JointRegion } from '../regions/jointRegion';
 import { keepApart } from '../regions/keepApart';
 import { buildMesh, type MeshCell } from '../regions/mesh';
 import { meshRegion } from '../regions/meshRegion';
@@ -72,7 +72,9 @@ function searched(parts: Part[], looks: Look[]): Tally & { region: JointRegion }
 	const tally = tallyOf(cells);
 	if (!(tally.nothing > 0) || isUnmoved(cells)) {
 		const region =
-			product.kind === 'fisher' ? closedRegion(product) : meshRegion(product.mesh.cells);
+			product.kind === 'fisher'
+				? closedRegion(product)
+				: (mapAlone(parts) ?? meshRegion(product.mesh.cells));
 		return { ...tally, region };
 	}
 	return { ...tally, region: meshRegion(survivors(cells, tally.nothing)) };

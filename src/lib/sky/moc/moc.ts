@@ -39,20 +39,29 @@ export function mocFromCells(cells: { order: number; pixel: number }[]): MocRang
 	const sizes = Float64Array.from(cells, ({ order }) => 4 ** (finest - order));
 	const index = Uint32Array.from(starts.keys());
 	index.sort((a, b) => (starts[a] ?? 0) - (starts[b] ?? 0));
-	const shift = BigInt(2 * (MOC_ORDER - finest));
+	return mocFromSorted(
+		finest,
+		Float64Array.from(index, (i) => starts[i] ?? 0),
+		Float64Array.from(index, (i) => (starts[i] ?? 0) + (sizes[i] ?? 0))
+	);
+}
+
+/** The set of half-open ranges of indices at `order` (0 to 24), sorted by their starts; they may overlap. */
+export function mocFromSorted(order: number, starts: Float64Array, ends: Float64Array): MocRanges {
+	const shift = BigInt(2 * (MOC_ORDER - order));
 	const ranges: MocRanges = [];
 	let from = 0;
 	let to = 0;
 	const close = () => {
 		if (to > from) ranges.push([BigInt(from) << shift, BigInt(to) << shift]);
 	};
-	for (const i of index) {
+	for (let i = 0; i < starts.length; i++) {
 		const start = starts[i] ?? 0;
 		if (start > to) {
 			close();
 			from = to = start;
 		}
-		to = Math.max(to, start + (sizes[i] ?? 0));
+		to = Math.max(to, ends[i] ?? 0);
 	}
 	close();
 	return ranges;

@@ -3,6 +3,7 @@ import type { MocRanges } from '../moc/moc';
 import { canonicalOrder } from './canonicalOrder';
 import { closedRegion } from './closedRegion';
 import { keepApart } from './keepApart';
+import { mapRegion } from './mapRegion';
 import { meshRegion } from './meshRegion';
 import { agreeingGroups, multiplyParts, prepareParts, type Part } from './parts';
 import type { RegionPoints } from './regionPoints';
@@ -39,6 +40,8 @@ export function jointRegion(parts: Shape[]): JointRegion {
 }
 
 function regionOf(parts: Part[]): JointRegion {
+	const alone = mapAlone(parts);
+	if (alone) return alone;
 	const product = multiplyParts(parts);
 	if (product.agrees) {
 		return product.kind === 'fisher' ? closedRegion(product) : meshRegion(product.mesh.cells);
@@ -46,4 +49,10 @@ function regionOf(parts: Part[]): JointRegion {
 	return keepApart(
 		agreeingGroups(parts).map((group) => ({ region: regionOf(group), weight: group.length }))
 	);
+}
+
+/** The region of a single map; null for all other parts. */
+export function mapAlone(parts: Part[]): JointRegion | null {
+	const map = parts.length === 1 ? parts[0]?.map : null;
+	return map ? mapRegion(map) : null;
 }

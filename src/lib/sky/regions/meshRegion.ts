@@ -1,8 +1,14 @@
 import type { Equatorial } from '../angle';
-import { cellAreaSr } from '../healpix/healpix';
 import { mocContains } from '../moc/moc';
-import { angleBetweenDeg, norm, normalise, toEquatorial, type Vector } from '../vector';
+import { angleBetweenDeg, toEquatorial, type Vector } from '../vector';
 import { capRadiusDeg } from './cap';
+import {
+	centreOfMass,
+	columnsOf,
+	probabilityColumn,
+	vectorAt,
+	type CellColumns
+} from './cellColumns';
 import { credibleRegion } from './credible';
 import type { JointRegion } from './jointRegion';
 import type { MeshCell } from './mesh';
@@ -11,10 +17,16 @@ import type { RegionPoints } from './regionPoints';
 
 /** The region of a normalised mesh (at least one cell). */
 export function meshRegion(cells: MeshCell[]): JointRegion {
-	const middle = centreOfMass(cells);
-	const half = credibleRegion(cells, 0.5, middle);
-	const most = credibleRegion(cells, 0.9, middle);
-	const points = meshPoints(cells);
+	return columnsRegion(columnsOf(cells));
+}
+
+/** The region of normalised cells (at least one). */
+export function columnsRegion(cells: CellColumns): JointRegion {
+	const probability = probabilityColumn(cells);
+	const middle = centreOfMass(cells, probability);
+	const half = credibleRegion(cells, probability, 0.5, middle);
+	const most = credibleRegion(cells, probability, 0.9, middle);
+	const points = meshPoints(cells, probability);
 	const mean = toEquatorial(middle);
 	return {
 		method: 'mesh',
@@ -33,27 +45,16 @@ export function meshRegion(cells: MeshCell[]): JointRegion {
 	};
 }
 
-function centreOfMass(cells: MeshCell[]): Vector {
-	const sum = { x: 0, y: 0, z: 0 };
-	for (const { at, density, order } of cells) {
-		const probability = density * cellAreaSr(order);
-		sum.x += probability * at.x;
-		sum.y += probability * at.y;
-		sum.z += probability * at.z;
-	}
-	// A full ring or sky has its centre of mass in the middle of the Earth: any cell will do then.
-	return norm(sum) > 1e-9 ? normalise(sum) : (cells[0]?.at ?? { x: 1, y: 0, z: 0 });
-}
-
 /** Of the densest cells the one nearest to `middle`: the first that any credible region takes. */
-function densestCell(cells: MeshCell[], middle: Vector): Vector {
-	const most = cells.reduce((greatest, cell) => Math.max(greatest, cell.density), 0);
+function densestCell(cells: CellColumns, middle: Vector): Vector {
+	const most = cells.density.reduce((greatest, value) => Math.max(greatest, value), 0);
 	let best = { at: middle, distanceDeg: Infinity };
-	for (const { at, density } of cells) {
-		if (density < most) continue;
+	cells.density.forEach((value, i) => {
+		if (value < most) return;
+		const at = vectorAt(cells, i);
 		const distanceDeg = angleBetweenDeg(at, middle);
 		if (distanceDeg < best.distanceDeg) best = { at, distanceDeg };
-	}
+	});
 	return best.at;
 }
 

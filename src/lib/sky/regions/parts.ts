@@ -1,13 +1,15 @@
 import type { Vector } from '../vector';
 import type { Density } from './density/density';
 import { densityOf } from './density/densityOf';
+import { mapDensity } from './density/mapDensity';
+import { sortedMap, type SortedMap } from './density/sortedMap';
 import { fisherOf, logBayesFisher, multiplyFisher, type Fisher } from './fisher';
 import { buildMesh, type Mesh } from './mesh';
 import { contradicts, linkedGroups } from './overlap';
 import type { Shape } from './shape';
 
-/** A shape made ready: its density, and its Fisher parameters where it is a Gaussian circle. */
-export type Part = { density: Density; fisher: Fisher | null };
+/** A shape made ready: its density, its Fisher parameters where it is a Gaussian circle, its cells if a map. */
+export type Part = { density: Density; fisher: Fisher | null; map: SortedMap | null };
 
 /** What the parts say together, with the two measures of whether they agree. */
 export type PartProduct = { halfChi2: number; logBayes: number; agrees: boolean } & (
@@ -16,10 +18,14 @@ export type PartProduct = { halfChi2: number; logBayes: number; agrees: boolean 
 
 /** Checks and prepares shapes; throws a RangeError that names what is wrong. */
 export function prepareParts(shapes: Shape[]): Part[] {
-	return shapes.map((shape) => ({
-		density: densityOf(shape),
-		fisher: shape.kind === 'circle' ? fisherOf(shape) : null
-	}));
+	return shapes.map((shape) => {
+		if (shape.kind === 'map') {
+			const map = sortedMap(shape);
+			return { density: mapDensity(map), fisher: null, map };
+		}
+		const fisher = shape.kind === 'circle' ? fisherOf(shape) : null;
+		return { density: densityOf(shape), fisher, map: null };
+	});
 }
 
 /** The product of the parts (at least one): closed form for circles alone, else on a mesh. */

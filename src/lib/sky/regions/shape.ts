@@ -37,9 +37,13 @@ export type PolygonShape = { kind: 'polygon'; vertices: Equatorial[] };
 
 /**
  * A probability map on multi-order HEALPix cells, NESTED, ICRS. `uniq` holds UNIQ numbers
- * (4·4^order + index), `density` the probability per steradian in each cell.
+ * (4·4^order + index), `density` the probability per steradian in each cell. Plain arrays, as it is kept as JSON;
+ * maps in other orders, orderings and frames come to this form by `mapShapeFrom`.
  */
 export type MapShape = { kind: 'map'; uniq: number[]; density: number[] };
+
+/** Finest order of a flat map that is read: nside 2048, 50 million pixels. */
+export const FLAT_ORDER_MAX = 11;
 
 /** What one alert says about the position. */
 export type Shape =

@@ -117,7 +117,7 @@ export const alert = pgTable(
 		receivedAt: instant('received_at').notNull(),
 		/** Null for a retraction. */
 		shape: jsonb('shape').$type<Shape>(),
-		/** The shape's own 90 % area, a little larger, for searches; null where it is not worked out (circles are). */
+		/** The shape's own 90 % area, a little larger, for searches; null until a job has worked it out (circles have it at once). */
 		moc90: skyRegion('moc90'),
 		significance: doublePrecision('significance'),
 		falseAlarmPerYear: doublePrecision('false_alarm_per_year'),

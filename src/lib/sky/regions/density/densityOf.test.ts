@@ -124,8 +124,8 @@ describe('maps', () => {
 		[{ uniq: [4], density: [0] }, /0 everywhere/],
 		[{ uniq: [], density: [] }, /equally many/],
 		[{ uniq: [4, 5], density: [1] }, /equally many/],
-		[{ uniq: [3], density: [1] }, /uniq is 3/],
-		[{ uniq: [4.5], density: [1] }, /uniq is 4.5/]
+		[{ uniq: [3], density: [1] }, /uniq\[0\] is 3/],
+		[{ uniq: [4.5], density: [1] }, /uniq\[0\] is 4.5/]
 	])('refuse %o', (map, message) => {
 		expect(() => densityOf({ kind: 'map', ...map })).toThrow(message);
 	});

@@ -6,6 +6,7 @@ import { ellipseDensity } from './ellipseDensity';
 import { hardCircleDensity } from './hardCircleDensity';
 import { mapDensity } from './mapDensity';
 import { polygonDensity } from './polygonDensity';
+import { sortedMap } from './sortedMap';
 
 /** The normalised density of any shape; throws a RangeError that names what is wrong with it. */
 export function densityOf(shape: Shape): Density {
@@ -21,6 +22,6 @@ export function densityOf(shape: Shape): Density {
 		case 'polygon':
 			return polygonDensity(shape);
 		case 'map':
-			return mapDensity(shape);
+			return mapDensity(sortedMap(shape));
 	}
 }

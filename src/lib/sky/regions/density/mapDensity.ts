@@ -1,22 +1,12 @@
-import { cellAreaSr, fromUniq, pixelAt } from '../../healpix/healpix';
+import { cellAreaSr, pixelAt } from '../../healpix/healpix';
 import { toEquatorial } from '../../vector';
-import type { MapShape } from '../shape';
 import type { CellPlace, Density } from './density';
+import type { SortedMap } from './sortedMap';
 
-/** Cells in order of position: index ranges at the map's finest order, their log density and probability. */
-type SortedMap = {
-	order: number;
-	starts: Float64Array;
-	ends: Float64Array;
-	logs: Float64Array;
-	/** Probability in cells before i, normalised; one longer than the rest. */
-	before: Float64Array;
-};
-
-/** Density of a multi-order map, normalised to 1 over the sky; sky that no cell covers has none. */
-export function mapDensity(shape: MapShape): Density {
-	const map = sortedMap(shape);
-	const { starts, ends, logs, before } = map;
+/** Density of a multi-order map; sky that no cell covers has none. */
+export function mapDensity(map: SortedMap): Density {
+	const { starts, ends, before } = map;
+	const logs = map.density.map(Math.log);
 	const greatest = rangeMaximum(logs);
 	let lastCell: object | null = null;
 	let last = { low: 0, high: 0, from: 0, to: 0 };
@@ -44,7 +34,7 @@ export function mapDensity(shape: MapShape): Density {
 		const { from, to } = span(cell);
 		if (from >= to) return -Infinity;
 		// A single cell may be larger than the mesh cell: its density is the answer then.
-		if (to - from === 1 && cell.order >= orderOfRange(map, from)) return logs[from] ?? -Infinity;
+		if (to - from === 1 && cell.order >= (map.orders[from] ?? 0)) return logs[from] ?? -Infinity;
 		const probability = (before[to] ?? 0) - (before[from] ?? 0);
 		return probability > 0 ? Math.log(probability / cellAreaSr(cell.order)) : -Infinity;
 	};
@@ -63,61 +53,6 @@ export function mapDensity(shape: MapShape): Density {
 			return to - from === 1 && filled ? Infinity : 0;
 		}
 	};
-}
-
-function sortedMap({ uniq, density }: MapShape): SortedMap {
-	const count = uniq.length;
-	if (count === 0 || density.length !== count) {
-		throw new RangeError(
-			`map has ${count} uniq and ${density.length} density; it must have equally many, above 0`
-		);
-	}
-	const orders = new Uint8Array(count);
-	const pixels = new Float64Array(count);
-	let order = 0;
-	for (let i = 0; i < count; i++) {
-		const cell = fromUniq(uniq[i] ?? NaN);
-		orders[i] = cell.order;
-		pixels[i] = cell.pixel;
-		if (cell.order > order) order = cell.order;
-	}
-	const index = new Uint32Array(count);
-	let ascending = true;
-	for (let i = 0; i < count; i++) {
-		index[i] = i;
-		pixels[i] = (pixels[i] ?? 0) * 4 ** (order - (orders[i] ?? 0));
-		if (i > 0 && (pixels[i - 1] ?? 0) >= (pixels[i] ?? 0)) ascending = false;
-	}
-	if (!ascending) index.sort((a, b) => (pixels[a] ?? 0) - (pixels[b] ?? 0));
-	const starts = new Float64Array(count);
-	const ends = new Float64Array(count);
-	const logs = new Float64Array(count);
-	const before = new Float64Array(count + 1);
-	for (let i = 0; i < count; i++) {
-		const from = index[i] ?? 0;
-		const cellOrder = orders[from] ?? 0;
-		const value = density[from] ?? NaN;
-		if (!(value >= 0 && value < Infinity)) {
-			throw new RangeError(`density[${from}] is ${value}; it must be finite and at least 0`);
-		}
-		const start = pixels[from] ?? 0;
-		if (i > 0 && (ends[i - 1] ?? 0) > start) {
-			throw new RangeError(`uniq[${from}] is ${uniq[from]}; it overlaps another cell of the map`);
-		}
-		starts[i] = start;
-		ends[i] = start + 4 ** (order - cellOrder);
-		logs[i] = value;
-		before[i + 1] = (before[i] ?? 0) + value * cellAreaSr(cellOrder);
-	}
-	const total = before[count] ?? 0;
-	if (!(total > 0)) throw new RangeError('density is 0 everywhere; a map must hold probability');
-	for (let i = 0; i < count; i++) logs[i] = Math.log((logs[i] ?? 0) / total);
-	for (let i = 0; i <= count; i++) before[i] = (before[i] ?? 0) / total;
-	return { order, starts, ends, logs, before };
-}
-
-function orderOfRange({ order, starts, ends }: SortedMap, i: number): number {
-	return order - Math.round(Math.log2((ends[i] ?? 0) - (starts[i] ?? 0)) / 2);
 }
 
 /** First i whose value is above `bound`. */
