@@ -5,9 +5,10 @@ import { fieldAreaDeg2 } from './field';
 import { equidistant, type RegionSample } from './regionSample';
 
 const MOST_SUBPOINTS = 200;
-const MOST_SAMPLES = 20_000;
+const MOST_SAMPLES = 12_000;
 /** Parts of a point for every detector that its share of the sky would hold. */
 const PARTS_PER_DETECTOR = 7;
+const PARTS_WHEN_CUT = 4;
 /** A disc holds the corners of the share of sky that its point stands for when it is wider by this. */
 const TO_CORNERS = 1.12;
 /** The same near the rim of the 90 % region, where neighbours lie unevenly. */
@@ -32,8 +33,8 @@ export type Samples = {
 };
 
 /**
- * The region's points, each split into a spiral of equal parts when it stands for more than a ninth of the
- * smallest detector. When that makes too many, only the densest points, as far as `maxTiles` fields can reach.
+ * The region's points, each split into a spiral of equal parts when it stands for more than a seventh of the
+ * smallest detector (a quarter where `maxTiles` cuts the tiling anyway), and the rim of the 90 % region. When that makes too many, only the densest points, as far as `maxTiles` fields can reach.
  */
 export function coveringSamples(
 	region: RegionSample,
@@ -41,17 +42,23 @@ export function coveringSamples(
 	maxTiles: number
 ): Samples {
 	const smallest = Math.min(...detectors.map((detector) => fieldAreaDeg2([detector])));
+	const fieldDeg2 = fieldAreaDeg2(detectors);
+	let coreDeg2 = 0;
+	for (let k = 0; k < region.coreCount; k += 1) coreDeg2 += region.areaDeg2[region.byDensity[k]!]!;
+	// Where the limit cuts the tiling anyway, nobody looks for holes at the rim.
+	const isCut = coreDeg2 > 2 * maxTiles * fieldDeg2;
+	const density = isCut ? PARTS_WHEN_CUT : PARTS_PER_DETECTOR;
 	const isOuter = (rank: number) =>
-		rank > OUTER_SHARE * region.coreCount && rank < region.coreCount;
-	const reachOf = (rank: number) => (isOuter(rank) ? OUTER_REACH : TO_CORNERS);
+		!isCut && rank > OUTER_SHARE * region.coreCount && rank < region.coreCount;
+	const reachOf = (rank: number) => (isOuter(rank) ? OUTER_REACH : isCut ? 1 : TO_CORNERS);
 	let chosen = Array.from(region.byDensity, (index, rank) => {
-		const share = (PARTS_PER_DETECTOR * reachOf(rank) ** 2 * region.areaDeg2[index]!) / smallest;
+		const share = (density * reachOf(rank) ** 2 * region.areaDeg2[index]!) / smallest;
 		// A point that stands for less than a part is left whole.
 		const least = share > 1 && isOuter(rank) ? LEAST_OUTER_PARTS : 1;
 		return { index, parts: Math.max(least, Math.min(MOST_SUBPOINTS, Math.ceil(share))) };
 	});
 	if (chosen.reduce((sum, { parts }) => sum + parts, 0) > MOST_SAMPLES) {
-		const reachableDeg2 = 3 * maxTiles * fieldAreaDeg2(detectors);
+		const reachableDeg2 = 3 * maxTiles * fieldDeg2;
 		let areaDeg2 = 0;
 		const enough = chosen.findIndex(({ index }) => {
 			areaDeg2 += region.areaDeg2[index]!;

@@ -15,7 +15,7 @@ const POLAR_DEC_DEG = 75;
 const FLAT_FIELD_DEG = 4;
 const FLAT_REGION_DEG = 10;
 /** Samples looked at where a few stand for all. */
-const PROBES = 200;
+const PROBES = 150;
 
 type Shift = { x: number; y: number };
 
@@ -31,44 +31,53 @@ export type LaidTile = { tile: Tile; probability: number };
  */
 export function fieldLattice(samples: Samples, cell: Cell, middle: Equatorial): FieldLattice {
 	const probes = coreProbes(samples);
-	const positions = probes.map((i) => samples.positions[i]!);
-	const turned = () => {
-		const place: Placement = (position) => latticeTile(position, cell, middle);
-		const fitting = fittingSphere(cell, cell, place, samples, probes, middle);
-		return { at: (shift: Shift) => flatLattice(fitting, middle, shift), place };
-	};
+	const polar = probes.some((i) => Math.abs(samples.positions[i]!.decDeg) > POLAR_DEC_DEG);
+	const north = northLattice(samples, cell, middle, probes);
+	if (!polar || (cell.round && isOnAxis(cell))) return north;
+	const turned = turnedLattice(samples, cell, middle, probes);
+	const centred = north.at({ x: 0, y: 0 });
+	const keys = [...coreCells(samples, centred).keys()];
+	const reaches = [
+		...keys.map(centred.centreOf),
+		...probes.map((i) => samples.positions[i]!)
+	].every((position) => north.place(position));
+	const free = coreCells(samples, turned.at({ x: 0, y: 0 })).size;
+	return reaches && keys.length <= MOST_FOR_NORTH * free ? north : turned;
+}
+
+/** Bands of declination for fields aligned with north, a flat lattice for turned, off-axis and round ones. */
+function northLattice(
+	samples: Samples,
+	cell: Cell,
+	middle: Equatorial,
+	probes: readonly number[]
+): FieldLattice {
 	const place: Placement = (position) => northTile(position, cell);
-	if (positions.some((position) => !place(position))) return turned();
 	const sideways = isSideways(cell);
-	const turnDeg =
-		cell.round || sideways !== null
-			? 0
-			: 1.1 * Math.max(...positions.map((at) => turnAgainstLattice(cell, middle, at))) + 0.5;
-	const fitting =
-		sideways === null
-			? fittingSphere(cell, cellTurnedBy(cell, turnDeg), place, samples, probes, middle)
-			: cell;
-	const at =
-		sideways === null
-			? (shift: Shift) => flatLattice(fitting, middle, shift)
-			: (shift: Shift) =>
-					bandLattice(
-						{
-							widthDeg: sideways ? cell.heightDeg : cell.widthDeg,
-							heightDeg: sideways ? cell.widthDeg : cell.heightDeg
-						},
-						middle,
-						shift
-					);
-	const north = { at, place };
-	const polar = positions.some(({ decDeg }) => Math.abs(decDeg) > POLAR_DEC_DEG);
-	if (cell.round && isOnAxis(cell)) return north;
-	if (!polar) return north;
-	const other = turned();
-	const kept = coreCells(samples, north.at({ x: 0, y: 0 })).size;
-	const free = coreCells(samples, other.at({ x: 0, y: 0 })).size;
-	const reaches = lay(samples, north.at({ x: 0, y: 0 }), place).length === kept;
-	return reaches && kept <= MOST_FOR_NORTH * free ? north : other;
+	if (sideways !== null) {
+		const widthDeg = sideways ? cell.heightDeg : cell.widthDeg;
+		const heightDeg = sideways ? cell.widthDeg : cell.heightDeg;
+		return { at: (shift) => bandLattice({ widthDeg, heightDeg }, middle, shift), place };
+	}
+	const turns = cell.round
+		? [0]
+		: probes.map((i) => turnAgainstLattice(cell, middle, samples.positions[i]!));
+	// The probes may miss the greatest turn by a little.
+	const spacing = cellTurnedBy(cell, 1.1 * Math.max(...turns) + 0.5);
+	const fitting = fittingSphere(cell, spacing, place, samples, probes, middle);
+	return { at: (shift) => flatLattice(fitting, middle, shift), place };
+}
+
+/** A flat lattice with all fields turned along it. */
+function turnedLattice(
+	samples: Samples,
+	cell: Cell,
+	middle: Equatorial,
+	probes: readonly number[]
+): FieldLattice {
+	const place: Placement = (position) => latticeTile(position, cell, middle);
+	const fitting = fittingSphere(cell, cell, place, samples, probes, middle);
+	return { at: (shift) => flatLattice(fitting, middle, shift), place };
 }
 
 /** Cells that hold a core sample, with the probability of all samples in them. */
@@ -107,12 +116,19 @@ function isOnAxis({ offsetXDeg, offsetYDeg }: Cell): boolean {
 	return Math.hypot(offsetXDeg, offsetYDeg) < 1e-6;
 }
 
-function coreProbes({ core, count }: Samples): number[] {
+/** Some of the core samples, evenly taken; made once, as most fields share their samples. */
+function coreProbes(samples: Samples): number[] {
+	const known = probesOf.get(samples);
+	if (known) return known;
 	const all: number[] = [];
-	for (let i = 0; i < count; i += 1) if (core[i] === 1) all.push(i);
+	for (let i = 0; i < samples.count; i += 1) if (samples.core[i] === 1) all.push(i);
 	const stride = Math.max(1, Math.floor(all.length / PROBES));
-	return all.filter((_, k) => k % stride === 0);
+	const probes = all.filter((_, k) => k % stride === 0);
+	probesOf.set(samples, probes);
+	return probes;
 }
+
+const probesOf = new WeakMap<Samples, number[]>();
 
 /**
  * The spacing, made smaller until its corners lie on the field wherever it is laid: far from the middle the flat

@@ -16,9 +16,10 @@ function offsetAngles(cell: Cell): { distanceRad: number; directionRad: number }
 }
 
 /**
- * The tile of rotation 0 that brings the cell's middle onto a position, exactly (1e-8 rad beside the pole). Of two
- * pointings, one on each side of the pole, the nearer one; null where the cell can't reach, which is closer to the
- * pole than its offset to east or west. From sin δ = sin δ₀ cos ρ + cos δ₀ sin ρ cos θ for the pointing's δ₀.
+ * The tile of rotation 0 that brings the cell's middle onto a position (1e-5 degrees at the pole, 1e-9 elsewhere).
+ * Of two pointings, one on each side of the pole, the one on the position's side; null where there is none, which
+ * is at most as far from the pole as the cell is from the axis. From sin δ = sin δ₀ cos ρ + cos δ₀ sin ρ cos θ for
+ * the pointing's δ₀.
  */
 export function northTile(position: Equatorial, cell: Cell): Tile | null {
 	const { distanceRad, directionRad } = offsetAngles(cell);
