@@ -15,7 +15,7 @@ const POLAR_DEC_DEG = 75;
 const FLAT_FIELD_DEG = 4;
 const FLAT_REGION_DEG = 10;
 /** Samples looked at where a few stand for all. */
-const PROBES = 100;
+const PROBES = 48;
 
 type Shift = { x: number; y: number };
 

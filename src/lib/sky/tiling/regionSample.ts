@@ -11,7 +11,7 @@ import {
 const NEIGHBOURS = 6;
 const COVERED_SHARE = 0.9;
 /** Places looked at around a point for the rim of the 90 % region, and how deep in a neighbour they are dropped. */
-const RIM_PLACES = 12;
+const RIM_PLACES = 6;
 const RIM_REACH = 1.12;
 const RIM_OVERLAP = 1.25;
 
