@@ -14,7 +14,8 @@ export type ListedSlot = BoardSlot & {
 	designation: string;
 	t0: string;
 	telescopeName: string;
-	tiles: { raDeg: number; decDeg: number; startAt: string }[];
+	/** `rotationDeg` turns the whole field, north through east; 0 except near a pole. */
+	tiles: { raDeg: number; decDeg: number; rotationDeg: number; startAt: string }[];
 };
 
 /** Slots that hold a telescope now or later, with the transient each is for. */
@@ -45,6 +46,7 @@ export async function listSlots(app: App, actor: Actor | null): Promise<ListedSl
 		tiles: row.slot.tiles.map((tile) => ({
 			raDeg: tile.centre.raDeg,
 			decDeg: tile.centre.decDeg,
+			rotationDeg: tile.rotationDeg,
 			startAt: new Date(tile.startMs).toISOString()
 		}))
 	}));

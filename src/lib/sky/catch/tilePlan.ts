@@ -79,22 +79,31 @@ function bestTile(
 	exposureMs: number
 ): { index: number; chance: number } | null {
 	const limitAt = limitMagAt(input, clockMs + exposureMs / 2);
-	let best: { index: number; chance: number; gain: number; setsMs: number } | null = null;
+	const visible: { index: number; chance: number; gain: number; setsMs: number }[] = [];
+	let most = 0;
 	for (let index = 0; index < left.length; index += 1) {
 		const { tile, target, windows } = left[index]!;
 		// Sorted by probability, and no chance exceeds 1: nothing further down can gain more.
-		if (best && tile.probability < best.gain * (1 - TIE_SHARE)) break;
+		if (tile.probability < most * (1 - TIE_SHARE)) break;
 		const window = windows.find(
 			({ startMs, endMs }) => startMs <= clockMs && endMs >= clockMs + exposureMs
 		);
 		if (!window) continue;
 		const chance = detectChance(input.fade, input.t0Ms, clockMs + exposureMs / 2, limitAt(target));
 		const gain = tile.probability * chance;
-		const better = !best || gain > best.gain * (1 + TIE_SHARE);
-		const equal = best && gain > best.gain * (1 - TIE_SHARE) && window.endMs < best.setsMs;
-		if (better || equal) best = { index, chance, gain, setsMs: window.endMs };
+		visible.push({ index, chance, gain, setsMs: window.endMs });
+		most = Math.max(most, gain);
 	}
-	return best;
+	// Equal to the greatest of all, not each to the next: a chain of near equals would lead down.
+	return visible
+		.filter(({ gain }) => gain >= most * (1 - TIE_SHARE))
+		.reduce<(typeof visible)[number] | null>(
+			(best, one) =>
+				!best || one.setsMs < best.setsMs || (one.setsMs === best.setsMs && one.gain > best.gain)
+					? one
+					: best,
+			null
+		);
 }
 
 /** Next instant after the clock at which some tile has room for an exposure. */

@@ -144,6 +144,16 @@ describe('an outlook', () => {
 		expect(outlook.networkOrder[0]?.telescopeId).toBe('west');
 	});
 
+	it('charges for waiting what the network catches less when it starts an hour later', () => {
+		// The same region, trigger, nights and fade, with the first start an hour later.
+		const hourLater = computeOutlook(input({ nowMs: NOW_MS + HOUR_MS, spanHours: 23 }));
+		expect(outlook.networkCatchLater).toBeCloseTo(hourLater.networkCatch, 6);
+		expect(outlook.costOfWaitingPoints).toBeCloseTo(
+			100 * (outlook.networkCatch - hourLater.networkCatch),
+			4
+		);
+	});
+
 	it('can be cloned into a worker thread and back', () => {
 		expect(structuredClone(outlook)).toEqual(outlook);
 		expect(computeOutlook(structuredClone(input()))).toEqual(outlook);

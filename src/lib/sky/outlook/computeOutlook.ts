@@ -115,10 +115,10 @@ function prepare(input: OutlookInput): Shared {
 			}),
 		tilesOf: ({ detectors, maxTiles }) =>
 			remembered(tilings, JSON.stringify([detectors, maxTiles]), () =>
-				tilesFor(region, detectors, maxTiles).map((tile) => ({
-					tile,
-					target: skyTarget(tile.centre, sky)
-				}))
+				tilesFor(region, detectors, maxTiles)
+					// What only closes a gap between points is never planned, so its windows matter to nobody.
+					.filter(({ probability }) => probability > 0)
+					.map((tile) => ({ tile, target: skyTarget(tile.centre, sky) }))
 			)
 	};
 }

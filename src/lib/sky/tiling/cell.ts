@@ -1,5 +1,5 @@
 import { RAD_PER_DEG, type Equatorial } from '../angle';
-import { deproject, project, type TangentPoint } from '../vector';
+import type { TangentPoint } from '../vector';
 import type { Detector } from '../visibility/telescope';
 
 /**
@@ -50,14 +50,11 @@ export function fieldCell(detectors: readonly Detector[]): Cell {
 			offsetYDeg: first.offsetYDeg
 		};
 	}
-	const half = (detector: Detector, side: 'x' | 'y') =>
-		detector.shape === 'circle'
-			? detector.radiusDeg
-			: (side === 'x' ? detector.widthDeg : detector.heightDeg) / 2;
-	const west = Math.min(...detectors.map((d) => d.offsetXDeg - half(d, 'x')));
-	const east = Math.max(...detectors.map((d) => d.offsetXDeg + half(d, 'x')));
-	const south = Math.min(...detectors.map((d) => d.offsetYDeg - half(d, 'y')));
-	const north = Math.max(...detectors.map((d) => d.offsetYDeg + half(d, 'y')));
+	const boxes = detectors.map((detector) => boxAlong(detector, rotationDeg));
+	const west = Math.min(...boxes.map(({ x, halfX }) => x - halfX));
+	const east = Math.max(...boxes.map(({ x, halfX }) => x + halfX));
+	const south = Math.min(...boxes.map(({ y, halfY }) => y - halfY));
+	const north = Math.max(...boxes.map(({ y, halfY }) => y + halfY));
 	return {
 		round: false,
 		widthDeg: east - west,
@@ -65,6 +62,25 @@ export function fieldCell(detectors: readonly Detector[]): Cell {
 		rotationDeg,
 		offsetXDeg: (east + west) / 2,
 		offsetYDeg: (north + south) / 2
+	};
+}
+
+/** The box around a detector along axes turned by `rotationDeg`, which may not be the detector's own. */
+function boxAlong(detector: Detector, rotationDeg: number) {
+	const ownDeg = detector.shape === 'circle' ? 0 : detector.rotationDeg;
+	const { offsetXDeg, offsetYDeg } = detector;
+	const { eastDeg, northDeg } = cellOffset({ rotationDeg: ownDeg, offsetXDeg, offsetYDeg });
+	const [c, s] = [Math.cos(rotationDeg * RAD_PER_DEG), Math.sin(rotationDeg * RAD_PER_DEG)];
+	const place = { x: eastDeg * c - northDeg * s, y: eastDeg * s + northDeg * c };
+	if (detector.shape === 'circle') {
+		return { ...place, halfX: detector.radiusDeg, halfY: detector.radiusDeg };
+	}
+	const turnRad = (ownDeg - rotationDeg) * RAD_PER_DEG;
+	const [along, across] = [Math.abs(Math.cos(turnRad)), Math.abs(Math.sin(turnRad))];
+	return {
+		...place,
+		halfX: (detector.widthDeg * along + detector.heightDeg * across) / 2,
+		halfY: (detector.widthDeg * across + detector.heightDeg * along) / 2
 	};
 }
 
@@ -76,20 +92,4 @@ export function cellOffset({ rotationDeg, offsetXDeg, offsetYDeg }: Offset): Tan
 	const c = Math.cos(rotationDeg * RAD_PER_DEG);
 	const s = Math.sin(rotationDeg * RAD_PER_DEG);
 	return { eastDeg: offsetXDeg * c + offsetYDeg * s, northDeg: offsetYDeg * c - offsetXDeg * s };
-}
-
-/** Where to point so that the cell lands on a position; nearest possible close to a pole. */
-export function pointingFor(position: Equatorial, cell: Offset): Equatorial {
-	if (cell.offsetXDeg === 0 && cell.offsetYDeg === 0) return position;
-	const wanted = cellOffset(cell);
-	let pointing = deproject(position, { eastDeg: -wanted.eastDeg, northDeg: -wanted.northDeg });
-	for (let step = 0; step < 12; step += 1) {
-		const seen = project(pointing, position);
-		if (!seen) break;
-		const eastDeg = seen.eastDeg - wanted.eastDeg;
-		const northDeg = seen.northDeg - wanted.northDeg;
-		if (Math.hypot(eastDeg, northDeg) < 1e-7) break;
-		pointing = deproject(pointing, { eastDeg, northDeg });
-	}
-	return pointing;
 }

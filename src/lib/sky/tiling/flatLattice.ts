@@ -1,6 +1,6 @@
-import { DEG_PER_RAD, normaliseDeg, RAD_PER_DEG, type Equatorial } from '../angle';
-import { deproject, offset, positionAngleDeg } from '../vector';
-import { cellKey, cellOffset, cellOfKey, pointingFor, type Cell, type Lattice } from './cell';
+import { DEG_PER_RAD, RAD_PER_DEG, type Equatorial } from '../angle';
+import { offset } from '../vector';
+import { cellKey, cellOfKey, type Cell, type Lattice } from './cell';
 
 /**
  * A flat lattice around the region's middle, kept at true distances from it: hexagonal for circles. Distances
@@ -62,16 +62,4 @@ export function cellTurnedBy(cell: Cell, turnDeg: number): Cell {
 	return square * square > scale * scale * w * h
 		? { ...cell, widthDeg: square, heightDeg: square }
 		: { ...cell, widthDeg: scale * w, heightDeg: scale * h };
-}
-
-/**
- * How far a field at a position stands turned against a flat lattice about `middle`, degrees: the lattice keeps
- * its direction, the field follows north at its pointing.
- */
-export function turnAgainstLattice(cell: Cell, middle: Equatorial, position: Equatorial): number {
-	const outDeg = positionAngleDeg(position, middle) + 180 - positionAngleDeg(middle, position);
-	const pointing = pointingFor(position, cell);
-	const up = deproject(pointing, cellOffset({ ...cell, offsetYDeg: cell.offsetYDeg + 0.01 }));
-	const axisDeg = positionAngleDeg(position, up);
-	return Math.abs(normaliseDeg(axisDeg - cell.rotationDeg - outDeg + 180) - 180);
 }
