@@ -15,6 +15,10 @@ import {
 } from './vector';
 
 describe('separation and position angle', () => {
+	it('reads all 60 pairs', () => {
+		expect(fixture.pairs).toHaveLength(60);
+	});
+
 	it.each(fixture.pairs)('agrees with 50-digit truth: $kind $lon1 $lat1', (pair) => {
 		const a = { raDeg: pair.lon1, decDeg: pair.lat1 };
 		const b = { raDeg: pair.lon2, decDeg: pair.lat2 };

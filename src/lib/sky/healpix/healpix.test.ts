@@ -37,6 +37,12 @@ describe('HEALPix indices', () => {
 		expect(tested.length).toBeGreaterThan(430);
 	});
 
+	it('reads all 100 directions, 30 centres and 6 discs', () => {
+		expect(fixture.directions).toHaveLength(100);
+		expect(fixture.pixel_centres).toHaveLength(30);
+		expect(fixture.discs).toHaveLength(6);
+	});
+
 	it.each(fixture.pixel_centres)('has healpy’s centre of $pix at nside $nside', (row) => {
 		const [raDeg = NaN, decDeg = NaN] = row.nest_lonlat;
 		const centre = cellCentre(Math.log2(row.nside), row.pix);

@@ -53,6 +53,23 @@ describe('the example of IVOA MOC 2.0', () => {
 		expect(mocAreaDeg2(a)).toBeCloseTo(derived.area_deg2, 5);
 	});
 
+	it('has the same ranges at orders 2 and 8, and the same cells in JSON', () => {
+		for (const [order, ranges] of [
+			[2, derived.ranges_order2],
+			[8, derived.ranges_order8]
+		] as const) {
+			const shift = BigInt(2 * (29 - order));
+			expect(a).toEqual(ranges.map((range) => range.map((cell) => BigInt(cell) << shift)));
+		}
+		const cells = Object.entries(JSON.parse(example.json_smoc) as Record<string, number[]>).flatMap(
+			([order, pixels]) => pixels.map((pixel) => ({ order: Number(order), pixel }))
+		);
+		expect(mocFromCells(cells)).toEqual(a);
+		expect(mocCells(a)).toEqual(
+			cells.sort((x, y) => x.pixel * 4 ** -x.order - y.pixel * 4 ** -y.order)
+		);
+	});
+
 	it('has the derived complement, intersection, union and difference', () => {
 		const b = fromText(derived.B);
 		expect(complement(a)).toEqual(fromText(derived.complement_order2));

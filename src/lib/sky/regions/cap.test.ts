@@ -7,6 +7,10 @@ import { arbitraryPosition } from '../testing/arbitraryPosition';
 import { capAreaDeg2, capIntersectionDeg2, capRadiusDeg } from './cap';
 
 describe('area common to two caps', () => {
+	it('reads all 40 pairs', () => {
+		expect(fixture.caps).toHaveLength(40);
+	});
+
 	it.each(fixture.caps)('agrees with 40 digits: $kind $r1° and $r2° at $sep_deg°', (row) => {
 		const area = capIntersectionDeg2(
 			{ centre: { raDeg: row.lon1, decDeg: row.lat1 }, radiusDeg: row.r1 },

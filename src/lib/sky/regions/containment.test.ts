@@ -30,6 +30,10 @@ describe('containment', () => {
 		expect(Math.abs(radiusFromKappa(kappa, 0.9) - row.r90Deg)).toBeLessThan(6e-5);
 	});
 
+	it('reads all 16 rows of radii and areas', () => {
+		expect(healpix.credible).toHaveLength(16);
+	});
+
 	it.each(healpix.credible)('gives radius and area at σ $sigma_deg°, $level', (row) => {
 		expect(
 			Math.abs(radiusFromSigma(row.sigma_deg, row.level) / row.fisher_radius_deg - 1)

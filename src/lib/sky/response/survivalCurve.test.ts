@@ -41,6 +41,11 @@ function expectClose(actual: number | null | undefined, expected: number | null 
 }
 
 describe('Kaplan-Meier against R survival 3.5-3', () => {
+	it('reads all four samples and both comparisons', () => {
+		expect(reference.samples).toHaveLength(4);
+		expect(reference.logrank).toHaveLength(2);
+	});
+
 	it.each(reference.samples.map((sample) => [sample.name, sample] as const))(
 		'gives survival, error and limits at every time of %s',
 		(_, sample) => {

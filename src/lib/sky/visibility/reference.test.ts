@@ -134,6 +134,15 @@ describe('airmass and moonlight against their formulas evaluated in Python', () 
 		expect(airmass(-0.01)).toBeNull();
 	});
 
+	it('stays within 1 % of the tabulated airmass of Bemporad 1904, 2 % below 5°', () => {
+		// As printed in handbooks (Allen, Astrophysical Quantities); zenith distance and airmass from memory.
+		const table = { 60: 1.995, 70: 2.904, 75: 3.816, 80: 5.6, 85: 10.395, 87: 15.365, 88: 19.787 };
+		for (const [zenithDeg, tabulated] of Object.entries(table)) {
+			const share = (airmass(90 - Number(zenithDeg)) ?? 0) / tabulated;
+			expect(Math.abs(share - 1)).toBeLessThan(Number(zenithDeg) > 85 ? 0.02 : 0.01);
+		}
+	});
+
 	it('matches Krisciunas and Schaefer 1991 on all 35 geometries', () => {
 		const { rows } = readReferenceJson<{ rows: Record<string, number>[] }>('fade.json');
 		expect(rows).toHaveLength(35);
