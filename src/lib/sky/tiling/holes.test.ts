@@ -27,11 +27,11 @@ const circle = (radiusDeg: number, offsetXDeg = 0, offsetYDeg = 0): Detector => 
 /** Fields with the most tiles that they may take, as multiples of region / field area, from 10 fields across. */
 const fields: [string, Detector[], number][] = [
 	['a rectangle', [rectangle(1.5, 1)], 2],
-	['a rectangle turned by 20 degrees', [rectangle(1.5, 1, 20)], 2.6],
-	['a rectangle turned by 45 degrees', [rectangle(1.5, 1, 45)], 2.6],
+	['a rectangle turned by 20 degrees', [rectangle(1.5, 1, 20)], 2.8],
+	['a rectangle turned by 45 degrees', [rectangle(1.5, 1, 45)], 2.8],
 	['a rectangle on its side', [rectangle(1.5, 1, 90)], 2],
 	['a circle', [circle(0.7)], 2],
-	['a rectangle off axis', [rectangle(1.2, 1.2, 20, 0.9, -0.4)], 2.2],
+	['a rectangle off axis', [rectangle(1.2, 1.2, 20, 0.9, -0.4)], 2.4],
 	[
 		'four detectors with gaps',
 		[-1, 1].flatMap((x) => [-1, 1].map((y) => rectangle(1, 1, 0, x * 0.55, y * 0.55))),
@@ -42,14 +42,12 @@ const fields: [string, Detector[], number][] = [
 		[0, 1, 2, 3, 4, 5].map((k) =>
 			circle(0.45, 1.1 * Math.cos((k * Math.PI) / 3), 1.1 * Math.sin((k * Math.PI) / 3))
 		),
-		7
+		7.5
 	],
 	['an L of two detectors', [rectangle(2, 0.8), rectangle(0.8, 1.2, 0, -0.6, 1)], 4.2]
 ];
 const DECS_DEG = [0, 45, -45, 80, -80, 89, -89, 90, -90];
 const SAMPLES = 2000;
-/** Beyond this much of the probability a place lies on the rim as the region's points know it. */
-const RIM = 0.86;
 
 /** Numbers in [0, 1) from a fixed start (Numerical Recipes' linear congruence, from memory). */
 function sequence(seed: number): () => number {
@@ -60,18 +58,17 @@ function sequence(seed: number): () => number {
 	};
 }
 
-/** How many of the samples inside the 90 % region, and inside its rim, no tile holds. */
-function holes(tiles: Tile[], detectors: Detector[], centre: Equatorial, kappa: number) {
+/** How many of the samples inside the 90 % region no tile holds. */
+function holes(tiles: Tile[], detectors: Detector[], centre: Equatorial, kappa: number): number {
 	const field = preparedField(detectors);
 	const axes = tiles.map(tileAxes);
 	const next = sequence(20261201);
-	const open = { inside: 0, all: 0 };
+	let open = 0;
 	for (let i = 0; i < SAMPLES; i += 1) {
 		const held = 0.9 * next();
 		const { x, y, z } = toVector(offset(centre, radiusFromKappa(kappa, held), 360 * next()));
 		if (axes.some((tile) => tileContains(field, tile, x, y, z))) continue;
-		open.all += 1;
-		if (held < RIM) open.inside += 1;
+		open += 1;
 	}
 	return open;
 }
@@ -85,9 +82,8 @@ describe.each(fields)('%s', (_, detectors, most) => {
 			const kappa = kappaFromRadius(radiusDeg, 0.9);
 			const region = regionSample(fisherPoints(centre, kappa));
 			const tiles = tilesFor(region, detectors, 100_000);
-			const { inside, all } = holes(tiles, detectors, centre, kappa);
-			expect(inside, `${fieldsAcross} fields across`).toBe(0);
-			expect(all, `${fieldsAcross} fields across, rim included`).toBeLessThanOrEqual(4);
+			const open = holes(tiles, detectors, centre, kappa);
+			expect(open, `${fieldsAcross} fields across`).toBe(0);
 			if (fieldsAcross < 0.5) expect(tiles).toHaveLength(1);
 			if (fieldsAcross >= 10) {
 				expect((tiles.length * areaDeg2) / (Math.PI * radiusDeg ** 2)).toBeLessThan(most);
