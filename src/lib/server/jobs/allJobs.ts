@@ -2,6 +2,7 @@ import { deliverCircularJob } from '../circulars/deliverCircularJob';
 import { failForgottenDeliveriesJob } from '../circulars/failForgottenDeliveriesJob';
 import { refreshOutlookJob } from '../outlook/refreshOutlookJob';
 import { refreshOutlooksJob } from '../outlook/refreshOutlooksJob';
+import { resumePacketsJob } from '../packets/resumePacketsJob';
 import { sendInvitationJob } from '../people/sendInvitationJob';
 import type { Job } from './queue';
 
@@ -11,5 +12,6 @@ export const ALL_JOBS = [
 	refreshOutlooksJob,
 	deliverCircularJob,
 	failForgottenDeliveriesJob,
+	resumePacketsJob,
 	sendInvitationJob
 ] as unknown as Job<unknown>[];
