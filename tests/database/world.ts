@@ -68,6 +68,9 @@ export async function openWorld(start = NIGHT) {
 			return names;
 		},
 		waitingJobs: () => waiting.map((item) => item.job.name),
+		/** What is queued, with its payload. */
+		waiting: () => [...waiting],
+		dropWaiting: () => void waiting.splice(0),
 		close: async () => {
 			await connection.close();
 			await testDatabase.drop();

@@ -55,5 +55,7 @@ function formatOdds(logOdds: number): string {
 		return logOdds > 13.8
 			? 'over 1,000,000 : 1'
 			: `${Number(Math.exp(logOdds).toPrecision(2))} : 1`;
-	return `1 : ${Number(Math.exp(-logOdds).toPrecision(2))}`;
+	return logOdds < -13.8
+		? 'less than 1 : 1,000,000'
+		: `1 : ${Number(Math.exp(-logOdds).toPrecision(2))}`;
 }

@@ -1,5 +1,6 @@
 import { deliverCircularJob } from '../circulars/deliverCircularJob';
 import { failForgottenDeliveriesJob } from '../circulars/failForgottenDeliveriesJob';
+import { mailPersonJob, pushPersonJob } from '../notify/tellPerson';
 import { refreshOutlookJob } from '../outlook/refreshOutlookJob';
 import { refreshOutlooksJob } from '../outlook/refreshOutlooksJob';
 import { resumePacketsJob } from '../packets/resumePacketsJob';
@@ -13,5 +14,7 @@ export const ALL_JOBS = [
 	deliverCircularJob,
 	failForgottenDeliveriesJob,
 	resumePacketsJob,
+	mailPersonJob,
+	pushPersonJob,
 	sendInvitationJob
 ] as unknown as Job<unknown>[];
