@@ -25,7 +25,9 @@ export default async function eventloop(): Promise<BenchRow[]> {
 		const untilMs = countFromMs + RUN_MS;
 		const times: number[] = [];
 		const feed = postUpdates(origin, streamKeys.tambour, untilMs);
-		await Promise.all(Array.from({ length: POLLERS }, () => poll(origin, cookie, countFromMs, untilMs, times)));
+		await Promise.all(
+			Array.from({ length: POLLERS }, () => poll(origin, cookie, countFromMs, untilMs, times))
+		);
 		const outlooks = await feed;
 		const sorted = times.sort((a, b) => a - b);
 		const at = (share: number) => sorted[Math.floor(share * (sorted.length - 1))] ?? NaN;

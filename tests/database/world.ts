@@ -1,14 +1,14 @@
 import { parseConfig } from '../../src/lib/server/config';
 import type { Actor } from '../../src/lib/server/actor';
 import type { App } from '../../src/lib/server/app';
-import { receiveAlert, type Reception } from '../../src/lib/server/alerts/alertService';
+import type { Reception } from '../../src/lib/server/alerts/alertService';
+import { takeIn } from '../../src/lib/server/packets/takeInService';
 import { connectDatabase } from '../../src/lib/server/db/database';
 import { stream } from '../../src/lib/server/db/schema/alerts';
 import { telescope, telescopeObserver } from '../../src/lib/server/db/schema/network';
 import { person } from '../../src/lib/server/db/schema/people';
 import type { Job, Queue } from '../../src/lib/server/jobs/queue';
 import type { AuthenticatedStream } from '../../src/lib/server/streams/streamKeyService';
-import { alertPacketSchema } from '../../src/lib/domain/alertPacket';
 import type { Role, StreamClass } from '../../src/lib/domain/vocabulary';
 import { outlookText } from '../../src/lib/server/outlook/outlookText';
 import { computeOutlook } from '../../src/lib/sky/outlook/computeOutlook';
@@ -72,6 +72,9 @@ export async function openWorld(start = NIGHT) {
 			return names;
 		},
 		waitingJobs: () => waiting.map((item) => item.job.name),
+		/** What is queued, with its payload. */
+		waiting: () => [...waiting],
+		dropWaiting: () => void waiting.splice(0),
 		close: async () => {
 			await connection.close();
 			await testDatabase.drop();
@@ -127,14 +130,16 @@ function makers(app: App) {
 			}
 			return row!;
 		},
-		/** Receives a packet as the API route does, after its validation. */
+		/** Takes a packet in as the API route does once the key is known. */
 		async receive(source: AuthenticatedStream, input: Record<string, unknown>): Promise<Reception> {
 			const body = Buffer.from(JSON.stringify(input));
-			return receiveAlert(app, source, {
-				packet: alertPacketSchema.parse(input),
+			const intake = await takeIn(app, source.stream, {
 				body,
-				contentType: 'application/json'
+				contentType: 'application/json',
+				channel: 'api'
 			});
+			if (intake.kind === 'noted') throw new Error(`noted only: ${intake.reason}`);
+			return intake;
 		}
 	};
 }

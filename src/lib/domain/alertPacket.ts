@@ -1,12 +1,13 @@
 import { z } from 'zod';
+import { normaliseDeg } from '../sky/angle';
 import { mapSchema } from './mapPacket';
 import { ALERT_KINDS, ALERT_ROLES, CITATION_RELATIONS } from './vocabulary';
 
 const finite = (low: number, high: number) => z.number().min(low).max(high);
 
-/** ICRS position in degrees. RA outside [0, 360) is refused here; forms fold it with a note. */
+/** ICRS position in degrees; a right ascension outside [0, 360) is folded into it. */
 export const equatorialSchema = z.strictObject({
-	raDeg: z.number().min(0).lt(360),
+	raDeg: finite(-3600, 3600).transform(normaliseDeg),
 	decDeg: finite(-90, 90)
 });
 

@@ -26,6 +26,21 @@ export type AlertRole = (typeof ALERT_ROLES)[number];
 export const ALERT_KINDS = ['report', 'update', 'retraction'] as const;
 export type AlertKind = (typeof ALERT_KINDS)[number];
 
+/** What became of a body as received; `refused` is the quarantine list, `noted` are packets that are no alerts. */
+export const PACKET_STATES = [
+	'received',
+	'taken',
+	'copy',
+	'noted',
+	'refused',
+	'dismissed'
+] as const;
+export type PacketState = (typeof PACKET_STATES)[number];
+
+/** The way a body came in. */
+export const PACKET_CHANNELS = ['api', 'file', 'form', 'socket'] as const;
+export type PacketChannel = (typeof PACKET_CHANNELS)[number];
+
 /** How an earlier packet is cited (VOEvent 2.0, EventIVORN@cite). */
 export const CITATION_RELATIONS = ['followup', 'supersedes', 'retraction'] as const;
 export type CitationRelation = (typeof CITATION_RELATIONS)[number];
@@ -84,6 +99,7 @@ export type DeliveryState = (typeof DELIVERY_STATES)[number];
 export const JOURNAL_KINDS = [
 	'alertReceived',
 	'alertRetracted',
+	'alertRepeated',
 	'regionChanged',
 	'taken',
 	'decided',

@@ -14,6 +14,7 @@ export type DomainErrorCode =
 	| 'unsupportedMediaType'
 	| 'bodyTooLarge'
 	| 'malformedBody'
+	| 'tooManyRequests'
 	| 'originRefused'
 	| 'unavailable';
 

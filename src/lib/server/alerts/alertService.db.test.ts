@@ -70,12 +70,12 @@ describe('a packet', () => {
 		expect(kept).toHaveLength(1);
 	});
 
-	it('is refused when another body has its id and serial, and nothing is written', async () => {
+	it('is refused when another body has its id and serial; it is kept, but no alert is made', async () => {
 		await world.receive(gamma, circlePacket({ packetId: packetId('A'), t0: t0() }));
-		const before = await world.app.database.$count(packet);
+		const before = await world.app.database.$count(alert);
 		const other = circlePacket({ packetId: packetId('A'), t0: t0(), significance: 9 });
 		await expect(world.receive(gamma, other)).rejects.toMatchObject({ code: 'packetConflict' });
-		expect(await world.app.database.$count(packet)).toBe(before);
+		expect(await world.app.database.$count(alert)).toBe(before);
 	});
 
 	it('is kept byte for byte', async () => {

@@ -1,19 +1,26 @@
-import { createHash } from 'node:crypto';
 import { isDeepStrictEqual } from 'node:util';
-import { and, eq, or } from 'drizzle-orm';
-import { alertPacketSchema, type AlertPacket } from '../../domain/alertPacket';
+import { and, eq, or, sql } from 'drizzle-orm';
 import type { App } from '../app';
 import type { Transaction } from '../db/database';
-import { alert, packet as packetTable, stream } from '../db/schema/alerts';
-import { transient } from '../db/schema/transients';
+import { alert, stream } from '../db/schema/alerts';
+import { journal, transient } from '../db/schema/transients';
 import { writeTransaction } from '../db/writeTransaction';
 import { DomainError } from '../domainError';
+import { readPacket } from '../packets/packetReaders';
+import { settlePacket, type PacketRow } from '../packets/packetStore';
+import type { AlertContent, StreamRow } from '../packets/readOutcome';
 import { nextDesignation } from '../transients/designation';
 import { writeJournal } from '../transients/journalStore';
 import { deriveRegion } from '../transients/regionService';
-import type { AuthenticatedStream } from '../streams/streamKeyService';
-import { findPacket, lockTriage, withdrawAlerts, type AlertRow } from './alertStore';
-import { circleSky } from './alertSky';
+import { alertColumns, circleSky } from './alertSky';
+import {
+	homeAndPacketOf,
+	lockTriage,
+	serialsOf,
+	withdrawAlerts,
+	type AlertRow
+} from './alertStore';
+import { arrivalSummary, clockNotes } from './arrivalText';
 import { fillAlertSkyJob } from './fillAlertSkyJob';
 import { normalShape } from './normalShape';
 import { placeAlert, type Placement } from './association';
@@ -31,85 +38,85 @@ export type Receipt = {
 export type Reception = { receipt: Receipt; isNew: boolean };
 
 /**
- * Takes in one packet of a stream: keeps the body, puts the alert into a transient, derives the joint
- * region and asks for the outlook, all in one transaction. The caller has authenticated the key.
+ * Makes an alert of what a kept body says: puts it into a transient, derives the joint region and asks for
+ * the outlook, all in one transaction. A packet that is known already changes nothing.
  *
  * @throws DomainError `packetConflict` when another body has this id and serial.
  */
 export async function receiveAlert(
 	app: App,
-	source: AuthenticatedStream,
-	received: { packet: AlertPacket; body: Buffer; contentType: string }
+	source: StreamRow,
+	received: { content: AlertContent; kept: PacketRow; notes: string[] }
 ): Promise<Reception> {
-	const { packet, body } = received;
-	const known = await findPacket(app.database, source.streamId, packet.packetId, packet.serial);
-	if (known) return sameOrConflict(known, received, source);
-	const shape = await normalShape(app, packet.shape);
-	return writeTransaction(app, async (tx, change) => {
+	const { content, kept } = received;
+	const { receivedAt } = kept;
+	const t0 = new Date(content.t0);
+	const notes = [...clockNotes(t0, receivedAt), ...received.notes];
+	const shape = await normalShape(app, content.shape);
+	const reception = await writeTransaction(app, async (tx, change) => {
 		await lockTriage(tx);
-		// A copy may have come in while this one waited for the lock.
-		const twin = await findPacket(tx, source.streamId, packet.packetId, packet.serial);
-		if (twin) return sameOrConflict(twin, received, source);
+		const serials = await serialsOf(tx, source.id, content.packetId);
+		const twin = serials.find((row) => row.serial === content.serial);
+		if (twin) return repeated(app, tx, source, twin, received);
 
-		const receivedAt = app.now();
-		const t0 = new Date(packet.t0);
-		const settings = await streamSettings(tx, source.streamId);
 		const placement = await placeAlert(tx, {
-			packet,
-			streamId: source.streamId,
-			streamCode: settings.code,
-			alertsPerYear: settings.alertsPerYear,
-			coincidenceWindowS: settings.coincidenceWindowS,
+			packet: content,
+			serials,
+			streamId: source.id,
+			streamCode: source.code,
+			alertsPerYear: source.alertsPerYear,
+			coincidenceWindowS: source.coincidenceWindowS,
 			t0,
 			shape
 		});
-		const [raw] = await tx
-			.insert(packetTable)
-			.values({
-				streamId: source.streamId,
-				contentType: received.contentType,
-				body,
-				sha256: sha256Of(body),
-				receivedAt
-			})
-			.returning({ id: packetTable.id });
-		const home = await homeOf(tx, placement, packet, t0, receivedAt);
+		const home = await homeOf(tx, placement, content, t0, receivedAt);
+		const moc90 = circleSky(shape);
 		const [row] = await tx
 			.insert(alert)
 			.values({
-				streamId: source.streamId,
-				packetId: packet.packetId,
-				serial: packet.serial,
-				rawId: raw!.id,
-				role: packet.role,
-				kind: packet.kind,
-				cites: packet.cites,
+				streamId: source.id,
+				packetId: content.packetId,
+				serial: content.serial,
+				rawId: kept.id,
+				role: content.role,
+				kind: content.kind,
+				cites: content.cites,
 				t0,
 				receivedAt,
 				shape,
-				moc90: circleSky(shape),
-				significance: packet.significance ?? null,
-				falseAlarmPerYear: packet.falseAlarmPerYear ?? null,
-				remarks: packet.remarks,
+				moc90,
+				significance: content.significance ?? null,
+				falseAlarmPerYear: content.falseAlarmPerYear ?? null,
+				remarks: content.remarks,
 				transientId: home.id,
 				membership: placement.membership,
 				logOdds: placement.logOdds,
 				live: placement.live
 			})
-			.returning();
-		if (shape && !row!.moc90) await app.queue.enqueue(tx, fillAlertSkyJob, {});
+			.returning(alertColumns);
+		if (shape && !moc90) await app.queue.enqueue(tx, fillAlertSkyJob, {});
 		await withdrawAlerts(
 			tx,
 			placement.withdrawn.map((item) => item.id)
 		);
-		await tx.update(stream).set({ lastHeardAt: receivedAt }).where(eq(stream.id, source.streamId));
+		await settlePacket(tx, kept.id, { state: 'taken', at: app.now() });
+		await tx
+			.update(stream)
+			.set({ lastHeardAt: receivedAt, silenceNotedAt: null })
+			.where(eq(stream.id, source.id));
 		await writeJournal(tx, {
 			transientId: home.id,
-			kind: packet.kind === 'retraction' ? 'alertRetracted' : 'alertReceived',
-			at: receivedAt,
+			kind: content.kind === 'retraction' ? 'alertRetracted' : 'alertReceived',
+			at: app.now(),
 			actorId: null,
-			summary: arrivalSummary(settings.name, packet, placement),
-			detail: { alertId: row!.id, stream: settings.code, t0: packet.t0, logOdds: placement.logOdds }
+			summary: [arrivalSummary(source.name, content, placement), ...notes].join('; '),
+			detail: {
+				alertId: row!.id,
+				stream: source.code,
+				t0: content.t0,
+				logOdds: placement.logOdds,
+				notes
+			}
 		});
 		if (placement.live) await askAgainIfDropped(tx, home.id, receivedAt);
 		const touched = new Set([home.id, ...placement.withdrawn.map((item) => item.transientId)]);
@@ -119,49 +126,94 @@ export async function receiveAlert(
 				tx,
 				change,
 				id,
-				`${settings.name} ${packet.packetId}, serial ${packet.serial}`
+				`${source.name} ${content.packetId}, serial ${content.serial}`
 			);
 		}
-		return { receipt: receiptOf(row!, settings.code, home.designation), isNew: true };
+		return { receipt: receiptOf(row!, source.code, home.designation), isNew: true };
 	});
+	if ('conflict' in reception) throw reception.conflict;
+	return reception;
 }
 
-function sameOrConflict(
-	known: { alert: AlertRow; designation: string; body: Buffer; sha256: string },
-	received: { packet: AlertPacket; body: Buffer },
-	source: AuthenticatedStream
-): Reception {
-	if (known.sha256 !== sha256Of(received.body) && !sameContent(known.body, received.packet)) {
-		throw new DomainError(
-			'packetConflict',
-			`Packet ${received.packet.packetId}, serial ${received.packet.serial}, is known with other content. Send a higher serial to change it.`
-		);
+/** A packet that is here already: the same again changes nothing, other content is refused. */
+async function repeated(
+	app: App,
+	tx: Transaction,
+	source: StreamRow,
+	twin: AlertRow,
+	{ content, kept }: { content: AlertContent; kept: PacketRow }
+): Promise<Reception | { conflict: DomainError }> {
+	const { designation, packet: first } = await homeAndPacketOf(tx, twin);
+	const name = `${source.name} ${content.packetId}, serial ${content.serial}`;
+	if (first.sha256 === kept.sha256 || (await sameContent(app, source, first, content))) {
+		if (first.id !== kept.id) await settlePacket(tx, kept.id, { state: 'copy', at: app.now() });
+		await noteRepetition(tx, twin, app.now(), `${name}: came again, nothing changed`, 'copy');
+		return { receipt: receiptOf(twin, source.code, designation), isNew: false };
 	}
+	await noteRepetition(
+		tx,
+		twin,
+		app.now(),
+		`${name}: came again with other content; the first one stands, the other is in quarantine`,
+		'conflict'
+	);
 	return {
-		receipt: receiptOf(known.alert, source.stream.code, known.designation),
-		isNew: false
+		conflict: new DomainError(
+			'packetConflict',
+			`Packet ${content.packetId}, serial ${content.serial}, is known with other content. Send a higher serial to change it.`
+		)
 	};
 }
 
-/** The same packet may be written with other spacing or key order. */
-function sameContent(body: Buffer, packet: AlertPacket): boolean {
-	try {
-		return isDeepStrictEqual(alertPacketSchema.parse(JSON.parse(body.toString('utf8'))), packet);
-	} catch {
-		return false;
-	}
+/** Once for each alert and kind: a sender that repeats itself for hours must not fill the journal. */
+async function noteRepetition(
+	tx: Transaction,
+	{ id, transientId }: AlertRow,
+	at: Date,
+	summary: string,
+	what: 'copy' | 'conflict'
+): Promise<void> {
+	const known = await tx.$count(
+		journal,
+		and(
+			eq(journal.transientId, transientId),
+			eq(journal.kind, 'alertRepeated'),
+			sql`${journal.detail} @> ${JSON.stringify({ alertId: id, what })}::jsonb`
+		)
+	);
+	if (known > 0) return;
+	const detail = { alertId: id, what };
+	await writeJournal(tx, {
+		transientId,
+		kind: 'alertRepeated',
+		at,
+		actorId: null,
+		summary,
+		detail
+	});
 }
 
-async function streamSettings(tx: Transaction, id: string) {
-	const [settings] = await tx.select().from(stream).where(eq(stream.id, id));
-	if (!settings) throw new DomainError('notFound', 'This stream is not known.');
-	return settings;
+/** The same packet may be written with other spacing or key order. */
+async function sameContent(
+	app: App,
+	source: StreamRow,
+	first: PacketRow,
+	content: AlertContent
+): Promise<boolean> {
+	try {
+		const outcome = await readPacket(app, source, first);
+		return outcome.kind === 'alert' && isDeepStrictEqual(outcome.content, content);
+	} catch (error) {
+		// Settings may have changed since: what can't be read now is not known to be the same.
+		if (error instanceof DomainError) return false;
+		throw error;
+	}
 }
 
 async function homeOf(
 	tx: Transaction,
 	placement: Placement,
-	packet: AlertPacket,
+	packet: AlertContent,
 	t0: Date,
 	receivedAt: Date
 ): Promise<{ id: string; designation: string }> {
@@ -216,29 +268,6 @@ async function askAgainIfDropped(tx: Transaction, transientId: string, at: Date)
 	});
 }
 
-function arrivalSummary(streamName: string, packet: AlertPacket, placement: Placement): string {
-	const what = `${streamName} ${packet.packetId}, serial ${packet.serial}`;
-	if (packet.kind === 'retraction') return `${what}: retraction`;
-	const odds =
-		placement.logOdds === null ? '' : ` at odds of ${formatOdds(placement.logOdds)} for one source`;
-	const ways: Record<Placement['membership'], string> = {
-		started: 'started this transient',
-		joined: `joined${odds}`,
-		provisional: `joined provisionally${odds}; somebody should look`,
-		cited: 'belongs to a packet that is here',
-		moved: 'was moved here'
-	};
-	return `${what}: ${ways[placement.membership]}${placement.live ? '' : '; already replaced'}`;
-}
-
-function formatOdds(logOdds: number): string {
-	if (logOdds >= 0)
-		return logOdds > 13.8
-			? 'over 1,000,000 : 1'
-			: `${Number(Math.exp(logOdds).toPrecision(2))} : 1`;
-	return `1 : ${Number(Math.exp(-logOdds).toPrecision(2))}`;
-}
-
 function receiptOf(row: AlertRow, streamCode: string, designation: string): Receipt {
 	return {
 		alertId: row.id,
@@ -248,8 +277,4 @@ function receiptOf(row: AlertRow, streamCode: string, designation: string): Rece
 		designation,
 		receivedAt: row.receivedAt.toISOString()
 	};
-}
-
-function sha256Of(body: Buffer): string {
-	return createHash('sha256').update(body).digest('hex');
 }

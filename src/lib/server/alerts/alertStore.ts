@@ -4,8 +4,10 @@ import type { Shape } from '../../sky/regions/shape';
 import type { Executor } from '../db/database';
 import { alert, packet, stream, type Citation } from '../db/schema/alerts';
 import { transient } from '../db/schema/transients';
+import type { PacketRow } from '../packets/packetStore';
+import { alertColumns, type AlertWithoutSky } from './alertSky';
 
-export type AlertRow = typeof alert.$inferSelect;
+export type AlertRow = AlertWithoutSky;
 
 /** Any fixed number: alerts are put into transients one at a time, so that two can't both start one. */
 const TRIAGE_LOCK = 732_018_335;
@@ -14,27 +16,17 @@ export async function lockTriage(tx: Executor): Promise<void> {
 	await tx.execute(sql`select pg_advisory_xact_lock(${TRIAGE_LOCK})`);
 }
 
-/** The alert with this id and serial and the designation it belongs to now, with its body as received. */
-export async function findPacket(
+/** The designation an alert belongs to now, and the body it was read from. */
+export async function homeAndPacketOf(
 	executor: Executor,
-	streamId: string,
-	packetId: string,
-	serial: number
-): Promise<{ alert: AlertRow; designation: string; body: Buffer; sha256: string } | null> {
+	{ transientId, rawId }: Pick<AlertRow, 'transientId' | 'rawId'>
+): Promise<{ designation: string; packet: PacketRow }> {
 	const [found] = await executor
-		.select({
-			alert,
-			designation: transient.designation,
-			body: packet.body,
-			sha256: packet.sha256
-		})
-		.from(alert)
-		.innerJoin(transient, eq(transient.id, alert.transientId))
-		.innerJoin(packet, eq(packet.id, alert.rawId))
-		.where(
-			and(eq(alert.streamId, streamId), eq(alert.packetId, packetId), eq(alert.serial, serial))
-		);
-	return found ?? null;
+		.select({ designation: transient.designation, packet })
+		.from(transient)
+		.innerJoin(packet, eq(packet.id, rawId))
+		.where(eq(transient.id, transientId));
+	return found!;
 }
 
 /** Every serial of one packet. */
@@ -44,7 +36,7 @@ export async function serialsOf(
 	packetId: string
 ): Promise<AlertRow[]> {
 	return tx
-		.select()
+		.select(alertColumns)
 		.from(alert)
 		.where(and(eq(alert.streamId, streamId), eq(alert.packetId, packetId)))
 		.orderBy(alert.serial);
@@ -57,18 +49,24 @@ export async function citedAlerts(
 ): Promise<{ alert: AlertRow; relation: Citation['relation'] }[]> {
 	if (cites.length === 0) return [];
 	const rows = await tx
-		.select({ alert, code: stream.code })
+		.select({ alert: alertColumns, code: stream.code })
 		.from(alert)
 		.innerJoin(stream, eq(stream.id, alert.streamId))
 		.where(
 			or(
-				...cites.map((cite) => and(eq(stream.code, cite.stream), eq(alert.packetId, cite.packetId)))
+				...cites.map((cite) =>
+					and(
+						cite.stream === null ? undefined : eq(stream.code, cite.stream),
+						eq(alert.packetId, cite.packetId)
+					)
+				)
 			)
 		)
 		.orderBy(alert.receivedAt);
 	return rows.flatMap((row) => {
 		const cite = cites.find(
-			(item) => item.stream === row.code && item.packetId === row.alert.packetId
+			(item) =>
+				(item.stream === null || item.stream === row.code) && item.packetId === row.alert.packetId
 		);
 		return cite ? [{ alert: row.alert, relation: cite.relation }] : [];
 	});
@@ -80,14 +78,16 @@ export async function citingAlerts(
 	streamCode: string,
 	packetId: string
 ): Promise<{ alert: AlertRow; relation: Citation['relation'] }[]> {
-	const pattern = JSON.stringify([{ stream: streamCode, packetId }]);
+	const pattern = JSON.stringify([{ packetId }]);
 	const rows = await tx
-		.select()
+		.select(alertColumns)
 		.from(alert)
 		.where(sql`${alert.cites} @> ${pattern}::jsonb`)
 		.orderBy(alert.receivedAt);
 	return rows.flatMap((row) => {
-		const cite = row.cites.find((item) => item.stream === streamCode && item.packetId === packetId);
+		const cite = row.cites.find(
+			(item) => (item.stream === null || item.stream === streamCode) && item.packetId === packetId
+		);
 		return cite ? [{ alert: row, relation: cite.relation }] : [];
 	});
 }

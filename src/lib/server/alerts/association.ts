@@ -13,11 +13,10 @@ import {
 	citingAlerts,
 	liveParts,
 	nearbyTransients,
-	serialsOf,
 	type AlertRow,
 	type LivePart
 } from './alertStore';
-import type { AlertPacket } from '../../domain/alertPacket';
+import type { AlertContent } from '../packets/readOutcome';
 
 /** Where an alert goes and what its arrival withdraws. */
 export type Placement = {
@@ -32,7 +31,9 @@ export type Placement = {
 };
 
 export type Arrival = {
-	packet: AlertPacket;
+	packet: AlertContent;
+	/** What is known of this packet already, every serial of it. */
+	serials: AlertRow[];
 	streamId: string;
 	streamCode: string;
 	alertsPerYear: number;
@@ -46,8 +47,7 @@ export type Arrival = {
  * else of what already cites it, else the one it agrees with best (science: Budavári & Szalay 2008).
  */
 export async function placeAlert(tx: Transaction, arrival: Arrival): Promise<Placement> {
-	const { packet, streamId } = arrival;
-	const serials = await serialsOf(tx, streamId, packet.packetId);
+	const { packet, serials } = arrival;
 	const cited = await citedAlerts(tx, packet.cites);
 	const citing = await citingAlerts(tx, arrival.streamCode, packet.packetId);
 
@@ -63,10 +63,11 @@ export async function placeAlert(tx: Transaction, arrival: Arrival): Promise<Pla
 	const known = serials[0] ?? cited[0]?.alert ?? citing[0]?.alert;
 	const live = packet.kind !== 'retraction' && !overtaken;
 	if (known) {
+		const logOdds = oddsOfTheSamePlace(withdrawn, arrival);
 		return {
 			transientId: known.transientId,
-			membership: 'cited',
-			logOdds: null,
+			membership: logOdds === null ? 'cited' : 'provisional',
+			logOdds,
 			withdrawn,
 			live
 		};
@@ -82,6 +83,19 @@ export async function placeAlert(tx: Transaction, arrival: Arrival): Promise<Pla
 		withdrawn,
 		live
 	};
+}
+
+/**
+ * An update goes where its earlier version is, even when it is far from it; but when the two positions are
+ * sooner of two sources than of one, a person should look. Null where they agree or can't be compared.
+ */
+function oddsOfTheSamePlace(replaced: AlertRow[], arrival: Arrival): number | null {
+	const { shape } = arrival;
+	if (shape?.kind !== 'circle') return null;
+	const before = replaced.flatMap((row) => (row.shape?.kind === 'circle' ? [row.shape] : []));
+	if (before.length === 0) return null;
+	const best = Math.max(...before.map((earlier) => logBayesFactor([earlier, shape])));
+	return best < 0 ? finite(best) : null;
 }
 
 async function bestMatch(

@@ -136,7 +136,9 @@ async function insertAlerts(
 				contentType: 'application/json',
 				body,
 				sha256,
-				receivedAt: new Date(one.receivedMs)
+				receivedAt: new Date(one.receivedMs),
+				state: 'taken' as const,
+				judgedAt: new Date(one.receivedMs)
 			}))
 		)
 		.returning({ id: packet.id, sha256: packet.sha256 });

@@ -1,6 +1,6 @@
 import { and, eq, inArray, isNull, sql } from 'drizzle-orm';
 import type { App } from '../app';
-import { receiveAlert } from '../alerts/alertService';
+import { takeIn } from '../packets/takeInService';
 import { alert, stream, streamKey } from '../db/schema/alerts';
 import { person } from '../db/schema/people';
 import type { Transaction } from '../db/database';
@@ -144,14 +144,10 @@ async function beginHappeningNow(app: App, nowMs: number): Promise<void> {
 		const source = streams.find((one) => one.code === code);
 		if (!source) continue;
 		const marked = { ...packet, remarks: NOW_REMARKS };
-		await receiveAlert(
-			{ ...app, now: () => new Date(receivedMs[index]!) },
-			{ streamId: source.id, keyId: '', stream: source },
-			{
-				packet: marked,
-				body: Buffer.from(JSON.stringify(marked, null, 2)),
-				contentType: 'application/json'
-			}
-		);
+		await takeIn({ ...app, now: () => new Date(receivedMs[index]!) }, source, {
+			body: Buffer.from(JSON.stringify(marked, null, 2)),
+			contentType: 'application/json',
+			channel: 'api'
+		});
 	}
 }

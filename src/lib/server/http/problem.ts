@@ -18,6 +18,7 @@ const STATUS: Record<DomainErrorCode, { status: number; title: string }> = {
 	unsupportedMediaType: { status: 415, title: 'Unsupported media type' },
 	bodyTooLarge: { status: 413, title: 'Body too large' },
 	malformedBody: { status: 400, title: 'The body can’t be read' },
+	tooManyRequests: { status: 429, title: 'Too many requests' },
 	originRefused: { status: 403, title: 'Request from another origin' },
 	unavailable: { status: 503, title: 'Not available just now' }
 };
@@ -38,7 +39,15 @@ export function problemResponse(error: DomainError): Response {
 			...(error.errors.length > 0 ? { errors: error.errors } : {}),
 			...error.extra
 		},
-		{ status, headers: { 'content-type': 'application/problem+json' } }
+		{
+			status,
+			headers: {
+				'content-type': 'application/problem+json',
+				...(typeof error.extra.retryAfterS === 'number'
+					? { 'retry-after': String(error.extra.retryAfterS) }
+					: {})
+			}
+		}
 	);
 }
 

@@ -1,8 +1,10 @@
 import { fillAlertSkyJob } from '../alerts/fillAlertSkyJob';
 import { deliverCircularJob } from '../circulars/deliverCircularJob';
 import { failForgottenDeliveriesJob } from '../circulars/failForgottenDeliveriesJob';
+import { mailPersonJob, pushPersonJob } from '../notify/tellPerson';
 import { refreshOutlookJob } from '../outlook/refreshOutlookJob';
 import { refreshOutlooksJob } from '../outlook/refreshOutlooksJob';
+import { resumePacketsJob } from '../packets/resumePacketsJob';
 import { sendInvitationJob } from '../people/sendInvitationJob';
 import type { Job } from './queue';
 
@@ -13,5 +15,8 @@ export const ALL_JOBS = [
 	refreshOutlooksJob,
 	deliverCircularJob,
 	failForgottenDeliveriesJob,
+	resumePacketsJob,
+	mailPersonJob,
+	pushPersonJob,
 	sendInvitationJob
 ] as unknown as Job<unknown>[];

@@ -1,24 +1,16 @@
 import { createHash, randomBytes } from 'node:crypto';
 import { and, eq, isNull, lt, or } from 'drizzle-orm';
-import type { StreamClass } from '../../domain/vocabulary';
 import { requirePermission, type Actor } from '../actor';
 import type { App } from '../app';
 import { stream, streamKey } from '../db/schema/alerts';
 import { writeTransaction } from '../db/writeTransaction';
 import { DomainError } from '../domainError';
 
-/** The stream behind an API key, with what its packets are given when they say nothing. */
+/** The stream behind an API key, with its settings. */
 export type AuthenticatedStream = {
 	streamId: string;
-	keyId: string;
-	stream: {
-		id: string;
-		code: string;
-		name: string;
-		streamClass: StreamClass;
-		defaultContainment: number;
-		defaultSystematicDeg: number;
-	};
+	keyId: string | null;
+	stream: typeof stream.$inferSelect;
 };
 
 const PREFIX_LENGTH = 16;
@@ -77,12 +69,7 @@ export async function authenticateStreamKey(
 				)
 			);
 	}
-	const { id, code, name, streamClass, defaultContainment, defaultSystematicDeg } = found.stream;
-	return {
-		streamId: id,
-		keyId: found.key.id,
-		stream: { id, code, name, streamClass, defaultContainment, defaultSystematicDeg }
-	};
+	return { streamId: found.stream.id, keyId: found.key.id, stream: found.stream };
 }
 
 /** Makes a key for a stream. The key is in the answer and nowhere else: it can't be shown again. */

@@ -1,4 +1,4 @@
-import { asc, desc, eq, isNull, sql } from 'drizzle-orm';
+import { and, asc, desc, eq, inArray, isNull, sql } from 'drizzle-orm';
 import type {
 	StreamCreate,
 	StreamDetail,
@@ -9,7 +9,7 @@ import type {
 import { requirePermission, type Actor } from '../actor';
 import type { App } from '../app';
 import { databaseErrorOf, type Executor } from '../db/database';
-import { packetRefusal, stream, streamKey } from '../db/schema/alerts';
+import { packet, stream, streamKey } from '../db/schema/alerts';
 import { person } from '../db/schema/people';
 import { transient } from '../db/schema/transients';
 import { writeTransaction } from '../db/writeTransaction';
@@ -41,16 +41,20 @@ export async function streamDetail(
 	requirePermission(actor, 'viewNetwork');
 	const row = await requireStream(app.database, code);
 	const refusals = await app.database
-		.select({ at: packetRefusal.at, code: packetRefusal.code, detail: packetRefusal.detail })
-		.from(packetRefusal)
-		.where(eq(packetRefusal.streamId, row.id))
-		.orderBy(desc(packetRefusal.at))
+		.select({ at: packet.receivedAt, code: packet.code, detail: packet.detail })
+		.from(packet)
+		.where(and(eq(packet.streamId, row.id), inArray(packet.state, ['refused', 'dismissed'])))
+		.orderBy(desc(packet.receivedAt))
 		.limit(REFUSALS_SHOWN);
 	return {
 		...(await overviewOf(app, row)),
 		settings: settingsOf(row),
 		keys: await keysOf(app.database, row.id),
-		refusals: refusals.map(({ at, ...rest }) => ({ at: at.toISOString(), ...rest }))
+		refusals: refusals.map(({ at, code, detail }) => ({
+			at: at.toISOString(),
+			code: code ?? '',
+			detail
+		}))
 	};
 }
 
@@ -129,8 +133,10 @@ async function overviewOf(app: App, row: StreamRow): Promise<StreamOverview> {
 		refused: number;
 		live: number;
 	}>(sql`select
-		(select count(*)::int from packet where stream_id = ${row.id} and received_at > ${since}) as packets,
-		(select count(*)::int from packet_refusal where stream_id = ${row.id} and at > ${since}) as refused,
+		(select count(*)::int from packet where stream_id = ${row.id} and received_at > ${since}
+			and state in ('taken', 'copy', 'noted')) as packets,
+		(select count(*)::int from packet where stream_id = ${row.id} and received_at > ${since}
+			and state in ('refused', 'dismissed')) as refused,
 		(select count(*)::int from stream_key where stream_id = ${row.id} and revoked_at is null) as live`);
 	const { packets, refused, live } = rows[0]!;
 	const quietSince = row.lastHeardAt ?? row.createdAt;

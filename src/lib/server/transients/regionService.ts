@@ -1,5 +1,5 @@
 import { and, desc, eq } from 'drizzle-orm';
-import { jointRegion, type JointRegion } from '../../sky/regions/jointRegion';
+import { jointRegion, type JointRegion, type RegionPoints } from '../../sky/regions/jointRegion';
 import { formatArea } from '../../domain/area';
 import type { App } from '../app';
 import { liveParts, type LivePart } from '../alerts/alertStore';
@@ -11,6 +11,7 @@ import { slot } from '../db/schema/slots';
 import type { Change } from '../db/writeTransaction';
 import { requestOutlook } from '../outlook/outlookRequests';
 import { fadeOf } from '../outlook/outlookService';
+import { endRetractedWork, tellOffTarget } from '../slots/offTarget';
 import { standingNotFound } from '../reports/notFoundStore';
 import { writeJournal } from './journalStore';
 
@@ -28,7 +29,8 @@ export async function deriveRegion(
 	change.touch(transientId);
 	const parts = await liveParts(tx, transientId);
 	if (parts.length === 0) return closeWithoutAlerts(app, tx, transientId);
-	await storeNextRegion(app, tx, transientId, parts, cause);
+	const stored = await storeNextRegion(app, tx, transientId, parts, cause);
+	await tellOffTarget(app, tx, transientId, stored);
 	await tx.update(transient).set({ state: 'open' }).where(eq(transient.id, transientId));
 	await requestOutlook(app, tx, transientId);
 }
@@ -57,7 +59,7 @@ async function storeNextRegion(
 	transientId: string,
 	parts: LivePart[],
 	cause: string
-): Promise<void> {
+): Promise<{ version: number; points: RegionPoints }> {
 	const t0 = new Date(Math.min(...parts.map((part) => part.t0.getTime())));
 	const { joint, notFoundCount, tooFaintChance } = await regionNow(app, tx, transientId, parts, t0);
 	const [before] = await tx
@@ -105,6 +107,7 @@ async function storeNextRegion(
 			cause
 		}
 	});
+	return { version, points: joint.points };
 }
 
 type RegionNow = { joint: JointRegion; notFoundCount: number; tooFaintChance: number | null };
@@ -147,6 +150,7 @@ function regionSummary(joint: JointRegion, before90Deg2: number | null): string 
 async function closeWithoutAlerts(app: App, tx: Transaction, transientId: string): Promise<void> {
 	const now = app.now();
 	const retracted = (await tx.$count(alert, eq(alert.transientId, transientId))) > 0;
+	if (retracted) await endRetractedWork(app, tx, transientId);
 	await tx
 		.update(transient)
 		.set({ state: retracted ? 'retracted' : 'closed' })

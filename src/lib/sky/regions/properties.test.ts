@@ -8,6 +8,7 @@ import { offset, separationDeg } from '../vector';
 import { credibleRegion } from './credible';
 import { densityOf } from './density/densityOf';
 import { jointRegion } from './jointRegion';
+import { columnsOf, probabilityColumn } from './cellColumns';
 import { buildMesh } from './mesh';
 import type { Shape } from './shape';
 
@@ -93,9 +94,11 @@ describe('regions on the mesh', { timeout: 120_000 }, () => {
 					const middle = mesh.cells.reduce((most, cell) =>
 						cell.density > most.density ? cell : most
 					).at;
-					let smaller = credibleRegion(mesh.cells, 0.1, middle);
+					const cells = columnsOf(mesh.cells);
+					const probability = probabilityColumn(cells);
+					let smaller = credibleRegion(cells, probability, 0.1, middle);
 					for (const share of [0.3, 0.5, 0.6827, 0.9, 0.95]) {
-						const larger = credibleRegion(mesh.cells, share, middle);
+						const larger = credibleRegion(cells, probability, share, middle);
 						expect(larger.areaDeg2).toBeGreaterThan(smaller.areaDeg2);
 						// Coverage of more than 2000 ranges is grown to coarser cells, the smaller set maybe further.
 						const covered = [smaller, larger].map(

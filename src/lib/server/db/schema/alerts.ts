@@ -17,6 +17,8 @@ import type {
 	AlertRole,
 	CitationRelation,
 	Membership,
+	PacketChannel,
+	PacketState,
 	StreamClass
 } from '../../../domain/vocabulary';
 import type { Shape } from '../../../sky/regions/shape';
@@ -42,7 +44,11 @@ export const stream = pgTable('stream', {
 	coincidenceWindowS: doublePrecision('coincidence_window_s').notNull().default(3600),
 	fade: jsonb('fade').$type<FadeModel>().notNull(),
 	silentAfterMinutes: integer('silent_after_minutes').notNull().default(1440),
+	/** Which named Params of a VOEvent hold what. */
+	paramMap: jsonb('param_map').$type<ParamMap>().notNull().default({}),
 	lastHeardAt: instant('last_heard_at'),
+	/** When stewards were told that it is silent; null while it is heard. */
+	silenceNotedAt: instant('silence_noted_at'),
 	retiredAt: instant('retired_at'),
 	createdAt: instant('created_at').notNull().defaultNow()
 });
@@ -63,7 +69,7 @@ export const streamKey = pgTable('stream_key', {
 	revokedAt: instant('revoked_at')
 });
 
-/** A body as received, kept whatever was made of it. */
+/** A body as received, kept before it is judged and whatever is made of it. */
 export const packet = pgTable(
 	'packet',
 	{
@@ -71,31 +77,65 @@ export const packet = pgTable(
 		streamId: uuid('stream_id')
 			.notNull()
 			.references(() => stream.id),
+		/** The key it came with; null for a form or a socket. */
+		keyId: uuid('key_id').references(() => streamKey.id, { onDelete: 'set null' }),
+		/** Who sent it by a form. */
+		personId: uuid('person_id').references(() => person.id),
+		channel: text('channel').$type<PacketChannel>().notNull().default('api'),
 		contentType: text('content_type').notNull(),
 		body: bytes('body').notNull(),
+		/** The file that came with it, in object storage. */
+		fileKey: text('file_key'),
+		fileName: text('file_name'),
+		fileBytes: bigint('file_bytes', { mode: 'number' }),
 		sha256: text('sha256').notNull(),
-		receivedAt: instant('received_at').notNull()
+		receivedAt: instant('received_at').notNull(),
+		state: text('state').$type<PacketState>().notNull().default('received'),
+		judgedAt: instant('judged_at'),
+		/** Why it was refused: the problem's code, as in the answer to the sender. */
+		code: text('code'),
+		/** The reason in words; of a noted packet, why it is no alert. */
+		detail: text('detail').notNull().default('')
 	},
-	(table) => [index('packet_stream_received').on(table.streamId, table.receivedAt)]
+	(table) => [
+		index('packet_stream_received').on(table.streamId, table.receivedAt),
+		index('packet_unsettled')
+			.on(table.state, table.receivedAt)
+			.where(sql`${table.state} in ('received', 'refused')`)
+	]
 );
 
-/** A packet that an authenticated stream sent and that was refused: for the stream's error rate. */
-export const packetRefusal = pgTable(
-	'packet_refusal',
+/** A server that sends a stream's packets by the VOEvent Transport Protocol, and how its connection fares. */
+export const streamBroker = pgTable(
+	'stream_broker',
 	{
-		id: bigserial('id', { mode: 'number' }).primaryKey(),
+		id: uuid('id').primaryKey().defaultRandom(),
 		streamId: uuid('stream_id')
 			.notNull()
 			.references(() => stream.id, { onDelete: 'cascade' }),
-		at: instant('at').notNull(),
-		/** The refusal's code, as in the problem document. */
-		code: text('code').notNull(),
-		detail: text('detail').notNull()
+		host: text('host').notNull(),
+		port: integer('port').notNull(),
+		/** Only packets whose IVORN starts with it are this stream's; empty: all. */
+		ivornPrefix: text('ivorn_prefix').notNull().default(''),
+		enabled: boolean('enabled').notNull().default(true),
+		/** Since when the connection stands; null while there is none. */
+		connectedAt: instant('connected_at'),
+		/** The last message of any kind. */
+		lastAliveAt: instant('last_alive_at'),
+		lastError: text('last_error'),
+		lastErrorAt: instant('last_error_at')
 	},
-	(table) => [index('packet_refusal_stream_at').on(table.streamId, table.at)]
+	(table) => [unique('stream_broker_address').on(table.streamId, table.host, table.port)]
 );
 
-export type Citation = { stream: string; packetId: string; relation: CitationRelation };
+/** A Param of a VOEvent by name, in a Group or outside; the value is multiplied by `factor`. */
+export type ParamSource = { group: string; name: string; factor: number };
+export type ParamMap = Partial<
+	Record<'significance' | 'falseAlarmPerYear' | 'systematicDeg', ParamSource>
+>;
+
+/** An earlier packet; without `stream` (an IVORN does not say which) it may be any stream's. */
+export type Citation = { stream: string | null; packetId: string; relation: CitationRelation };
 
 /** One machine message from a stream. */
 export const alert = pgTable(
@@ -135,6 +175,7 @@ export const alert = pgTable(
 		unique('alert_stream_packet_serial').on(table.streamId, table.packetId, table.serial),
 		index('alert_transient').on(table.transientId),
 		index('alert_t0').on(table.t0),
+		index('alert_cites').using('gin', sql`${table.cites} jsonb_path_ops`),
 		index('alert_moc90').using('gist', sql`${table.moc90} multirange_ops`)
 	]
 );

@@ -1,0 +1,24 @@
+import type { AlertPacket } from '../../domain/alertPacket';
+import type { Citation, stream } from '../db/schema/alerts';
+
+export type StreamRow = typeof stream.$inferSelect;
+
+/** What an alert says, whatever format it was written in. */
+export type AlertContent = Omit<AlertPacket, 'cites'> & { cites: Citation[] };
+
+/** A body as a reader gets it. */
+export type KeptPacket = {
+	id: number;
+	contentType: string;
+	body: Buffer;
+	fileKey: string | null;
+	fileName: string | null;
+	receivedAt: Date;
+};
+
+/**
+ * What a reader makes of a body: an alert with notes for the journal (what was converted or folded), or a
+ * packet that is kept but is no alert. It throws a DomainError for what can't be read.
+ */
+export type ReadOutcome =
+	{ kind: 'alert'; content: AlertContent; notes: string[] } | { kind: 'noted'; reason: string };
