@@ -2,6 +2,7 @@ import { parseConfig } from '../../src/lib/server/config';
 import type { Actor } from '../../src/lib/server/actor';
 import type { App } from '../../src/lib/server/app';
 import type { Reception } from '../../src/lib/server/alerts/alertService';
+import { writeTransaction } from '../../src/lib/server/db/writeTransaction';
 import { takeIn } from '../../src/lib/server/packets/takeInService';
 import { connectDatabase } from '../../src/lib/server/db/database';
 import { stream } from '../../src/lib/server/db/schema/alerts';
@@ -128,6 +129,8 @@ function makers(app: App) {
 					.insert(telescopeObserver)
 					.values({ telescopeId: row!.id, personId: observer.id });
 			}
+			// As the service does: the board remembers telescopes until it is told.
+			await writeTransaction(app, (_tx, change) => Promise.resolve(change.touchNetwork()));
 			return row!;
 		},
 		/** Takes a packet in as the API route does once the key is known. */
