@@ -28,7 +28,7 @@ const LOG_FILE = 'test-results/application.log';
  * Starts what the browser tests run against: a database with the demo's seed, the fakes and the built
  * application, all on free loopback ports and ended by `stop()`.
  */
-export async function startStack(): Promise<Stack> {
+export async function startStack(options: { durable?: boolean } = {}): Promise<Stack> {
 	if (!existsSync('build/index.js') || !existsSync('build-workers/compute.js')) {
 		throw new Error('There is no build: run `npm run build` first');
 	}
@@ -41,7 +41,7 @@ export async function startStack(): Promise<Stack> {
 		for (const step of stops.reverse()) await step();
 	};
 	try {
-		const cluster = await startCluster();
+		const cluster = await startCluster(options);
 		stops.push(cluster.stop);
 		await administer(cluster.urlOf('postgres'), 'CREATE DATABASE duskline');
 		const mailbox = await startMailbox({ smtp: 0, http: 0 });
