@@ -92,7 +92,11 @@ export async function startVoeventBroker(options: {
 		socket.once('close', () => sockets.delete(socket));
 		const frames = new FrameReader();
 		socket.on('data', (chunk: Buffer) => {
-			for (const body of frames.read(chunk)) hear(body);
+			try {
+				for (const body of frames.read(chunk)) hear(body);
+			} catch {
+				socket.destroy();
+			}
 		});
 		sayAlive(socket);
 		for (const item of kept) if (item.event.state !== 'acked') sendTo(socket, item);
