@@ -18,6 +18,7 @@ export function startBrokerSubscriber(
 ): () => Promise<void> {
 	const sockets = new Map<string, HeldSocket>();
 	let stopped = false;
+	let failing = false;
 	let timer: NodeJS.Timeout | undefined;
 
 	const tryFor = async (wanted: WantedBroker): Promise<void> => {
@@ -48,8 +49,14 @@ export function startBrokerSubscriber(
 	let looking: Promise<void>;
 	const lookAndWait = () => {
 		looking = look()
+			.then(() => void (failing = false))
 			.catch((error: unknown) => {
-				logger.warn({ error: (error as Error).message }, 'sockets could not be looked after');
+				// Once, not every few seconds while the database is away.
+				if (!failing) {
+					const { message } = ((error as Error).cause ?? error) as Error;
+					logger.warn({ error: message }, 'sockets can’t be looked after');
+				}
+				failing = true;
 			})
 			.then(() => {
 				if (!stopped) timer = setTimeout(lookAndWait, timings.pollMs);
