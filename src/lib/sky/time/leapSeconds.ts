@@ -5,6 +5,7 @@
  */
 const LEAP_SECONDS: readonly { fromUtcMs: number; taiMinusUtcS: number }[] = (
 	[
+		['1988-01-01', 24],
 		['1990-01-01', 25],
 		['1991-01-01', 26],
 		['1992-07-01', 27],
@@ -23,23 +24,23 @@ const LEAP_SECONDS: readonly { fromUtcMs: number; taiMinusUtcS: number }[] = (
 
 const newestFirst = LEAP_SECONDS.toReversed();
 
-/** TAI − UTC in seconds at a UTC instant from 1990 on; RangeError before. */
+/** TAI − UTC in seconds at a UTC instant from 1988 on; RangeError before. */
 export function taiMinusUtcS(utcMs: number): number {
 	const entry = newestFirst.find(({ fromUtcMs }) => utcMs >= fromUtcMs);
-	if (!entry) throw new RangeError(`utcMs is ${utcMs}; leap seconds are known from 1990 on`);
+	if (!entry) throw new RangeError(`utcMs is ${utcMs}; leap seconds are known from 1988 on`);
 	return entry.taiMinusUtcS;
 }
 
 /**
  * The UTC instant of a TAI clock reading (milliseconds counted as if TAI had UTC's calendar and no leap
- * seconds), from 1990 on; RangeError before. A reading inside an inserted second gives the second after it.
+ * seconds), from 1988 on; RangeError before. A reading inside an inserted second gives the second after it.
  */
 export function utcMsOfTai(taiMs: number): number {
 	for (const { fromUtcMs, taiMinusUtcS: offsetS } of newestFirst) {
 		const utcMs = taiMs - offsetS * 1000;
 		if (utcMs >= fromUtcMs) return utcMs;
 	}
-	throw new RangeError(`taiMs is ${taiMs}; leap seconds are known from 1990 on`);
+	throw new RangeError(`taiMs is ${taiMs}; leap seconds are known from 1988 on`);
 }
 
 /** Whether a leap second was inserted right before this UTC midnight. */

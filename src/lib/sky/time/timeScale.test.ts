@@ -43,8 +43,8 @@ describe('time scales against astropy', () => {
 		expect(utcMsOfTai(readingMs('2017-01-01T00:00:35.5'))).toBe(readingMs('2016-12-31T23:59:59.5'));
 	});
 
-	it('refuses what lies before 1990', () => {
-		expect(() => taiMsOf('UTC', Date.UTC(1989, 11, 31))).toThrow(RangeError);
+	it('refuses what lies before 1988', () => {
+		expect(() => taiMsOf('UTC', Date.UTC(1987, 11, 31))).toThrow(RangeError);
 		expect(() => utcMsOfTai(Date.UTC(1950, 0, 1))).toThrow(RangeError);
 	});
 });

@@ -25,7 +25,7 @@ export function tdbMinusTtS(ttMs: number): number {
 
 /**
  * The TAI clock reading, in milliseconds, at which a clock of another scale shows `readingMs` (its calendar
- * date and time in milliseconds as if without leap seconds); from 1990 on, RangeError before. Exact but for
+ * date and time in milliseconds as if without leap seconds); from 1988 on, RangeError before. Exact but for
  * TDB (0.1 ms).
  */
 export function taiMsOf(scale: TimeScale, readingMs: number): number {
