@@ -1,4 +1,5 @@
 const TOKEN =
+	// eslint-disable-next-line no-control-regex
 	/[ \t\n\r]*(?:"[^"\\\u0000-\u001f]*(?:\\(?:["\\/bfnrt]|u[0-9a-fA-F]{4})[^"\\\u0000-\u001f]*)*"|-?(?:0|[1-9]\d*)(?:\.\d+)?(?:[eE][+-]?\d+)?|true|false|null|[{}[\],:])/y;
 
 type Expected = 'value' | 'firstItem' | 'firstName' | 'name' | 'colon' | 'next' | 'end';
