@@ -1,13 +1,18 @@
-import type { ParamMap, ParamSource } from '../db/schema/alerts';
+import {
+	MAPPED_PARAMS,
+	type MappedParam,
+	type ParamMap,
+	type ParamSource
+} from '../../domain/stream';
 import { childOf, childrenOf, floatOf, type XmlElement } from './xmlElement';
 
-export type EventNumbers = Partial<Record<keyof ParamMap, number>>;
+export type EventNumbers = Partial<Record<MappedParam, number>>;
 
-/** What each may be, as in the schema of an alert, with its name on screen. */
-const RANGES: Record<keyof ParamMap, { most: number; label: string }> = {
-	significance: { most: 1e6, label: 'significance' },
-	falseAlarmPerYear: { most: 1e9, label: 'false alarms a year' },
-	systematicDeg: { most: 60, label: 'systematic error' }
+/** The largest that each may be, as in the schema of an alert; none may be negative. */
+const MOST: Record<MappedParam, number> = {
+	significance: 1e6,
+	falseAlarmPerYear: 1e9,
+	systematicDeg: 60
 };
 
 /**
@@ -18,22 +23,22 @@ export function eventParams(
 	root: XmlElement,
 	map: ParamMap
 ): { numbers: EventNumbers; notes: string[] } {
-	const what = childOf(root, 'What');
+	const holder = childOf(root, 'What');
 	const numbers: EventNumbers = {};
 	const notes: string[] = [];
-	for (const key of Object.keys(RANGES) as (keyof ParamMap)[]) {
+	for (const key of Object.keys(MOST) as MappedParam[]) {
 		const source = map[key];
 		if (!source) continue;
-		const text = valueOf(what, source);
+		const text = valueOf(holder, source);
 		const parsed = floatOf(text);
 		if (parsed === null) {
 			if (text !== undefined) notes.push(`${nameOf(source)} is no number and was left out`);
 			continue;
 		}
-		const { most, label } = RANGES[key];
 		const value = parsed * source.factor;
-		if (value >= 0 && value <= most) numbers[key] = value;
-		else notes.push(`${nameOf(source)} gives a ${label} of ${value} and was left out`);
+		const what = MAPPED_PARAMS[key].label.toLowerCase();
+		if (value >= 0 && value <= MOST[key]) numbers[key] = value;
+		else notes.push(`${nameOf(source)} gives ${value} as ${what} and was left out`);
 	}
 	return { numbers, notes };
 }
