@@ -123,7 +123,8 @@ describe('a stream', () => {
 		const paramMap = { significance: { group: 'Trigger', name: 'snr', factor: 1 } };
 		await editStream(world.app, steward, 'tambour', { ...settings, paramMap });
 		await editStream(world.app, steward, 'tambour', settings);
-		const known = async () => (await streamDetail(world.app, observer, 'tambour')).settings.paramMap;
+		const known = async () =>
+			(await streamDetail(world.app, observer, 'tambour')).settings.paramMap;
 		expect(await known()).toEqual(paramMap);
 		await editStream(world.app, steward, 'tambour', { ...settings, paramMap: {} });
 		expect(await known()).toEqual({});
