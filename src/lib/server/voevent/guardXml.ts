@@ -16,6 +16,11 @@ const MOST_ATTRIBUTES = 40_000;
 /** What is no character of XML 1.0 (production 2): control characters, lone surrogates. */
 // eslint-disable-next-line no-control-regex
 const NO_CHARACTER = /[\u0000-\u0008\u000b\u000c\u000e-\u001f\ufffe\uffff]|\p{Surrogate}/u;
+/** A text without what XML can't hold. */
+export function xmlText(text: string): string {
+	return text.replace(new RegExp(NO_CHARACTER, 'gu'), '');
+}
+
 const REFERENCE = /&(?:lt|gt|amp|apos|quot|#[0-9]{1,7}|#x[0-9a-fA-F]{1,6});/y;
 const ENCODING = /^<\?xml\s[^?]{0,200}?\sencoding\s*=\s*["']([^"'?]{0,60})["']/;
 /** The parser refuses them as names of anything. */

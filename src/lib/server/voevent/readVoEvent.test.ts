@@ -189,6 +189,8 @@ describe('citations', () => {
 		expect(plain.notes.join()).toContain('its own date was taken');
 		const undated = changed('<Date>2026-12-01T03:41:52</Date>', '', retraction);
 		expect(alertOf(undated).content.t0).toBe(receivedAt.toISOString());
+		const ahead = changed('<Date>2026-', '<Date>2027-', retraction);
+		expect(alertOf(ahead).content.t0).toBe(receivedAt.toISOString());
 		const placed = citing(cite('retraction', 'ivo://a/b#1'));
 		expect(alertOf(placed).content).toMatchObject({
 			kind: 'retraction',

@@ -10,7 +10,7 @@ import { eventRemarks } from './eventRemarks';
 import { plainUtcDate } from './eventTime';
 import { eventPlace, type EventPlace } from './eventPlace';
 import { readXml } from './readXml';
-import { elementAt, refusal, type XmlElement } from './xmlElement';
+import { childOf, refusal, type XmlElement } from './xmlElement';
 
 /** What of a stream's settings a VOEvent is read with. */
 type Settings = Pick<StreamRow, 'paramMap' | 'defaultContainment' | 'defaultSystematicDeg'>;
@@ -128,21 +128,27 @@ function alertPlace(
  * keep it from taking an alert back.
  */
 function retractionTime(root: XmlElement, receivedAt: Date): When {
-	let place: EventPlace | null = null;
-	try {
-		place = eventPlace(root);
-	} catch (error) {
-		if (!(error instanceof DomainError)) throw error;
-	}
+	const place = placeIfReadable(root);
 	const notes = place?.position ? ['the position in the retraction was not used'] : [];
-	if (place?.time)
-		return { content: { t0: place.time.t0 }, notes: [...place.time.notes, ...notes] };
-	const written = plainUtcDate(elementAt(root, 'Who', 'Date'));
-	return {
-		content: { t0: written ?? receivedAt.toISOString() },
-		notes: [
-			`the retraction gives no time of the event; ${written ? 'its own date' : 'the time of its receipt'} was taken`,
-			...notes
-		]
-	};
+	const written = plainUtcDate(childOf(childOf(root, 'Who'), 'Date'));
+	const [t0, found] = place?.time
+		? [place.time.t0, place.time.notes]
+		: written
+			? [written, ['the retraction gives no time of the event; its own date was taken']]
+			: [null, ['the retraction gives no time; that of its receipt was taken']];
+	if (t0 !== null && Date.parse(t0) <= receivedAt.getTime()) {
+		return { content: { t0 }, notes: [...found, ...notes] };
+	}
+	const late =
+		t0 === null ? found : ['the retraction’s time lies ahead; that of its receipt was taken'];
+	return { content: { t0: receivedAt.toISOString() }, notes: [...late, ...notes] };
+}
+
+function placeIfReadable(root: XmlElement): EventPlace | null {
+	try {
+		return eventPlace(root);
+	} catch (error) {
+		if (error instanceof DomainError) return null;
+		throw error;
+	}
 }
