@@ -104,6 +104,13 @@ function endOfPlainMarkup(text: string, open: number, depth: number): number | n
 	return after('?>', open + 2, 'a processing instruction');
 }
 
+/** The pieces of a tag between its quoted values: the first, the later ones, and those that end it. */
+const NAME = String.raw`[^\s<>"'=/&]+`;
+const FIRST_PIECE = new RegExp(String.raw`^${NAME}\s+${NAME}\s*=\s*$`);
+const NEXT_PIECE = new RegExp(String.raw`^\s+${NAME}\s*=\s*$`);
+const WHOLE_TAG = new RegExp(String.raw`^(?:/${NAME}\s*|${NAME}\s*/?)$`);
+const LAST_PIECE = /^\s*\/?$/;
+
 type Tag = { end: number; closes: boolean; isEmpty: boolean; attributes: number };
 
 function readTag(text: string, open: number): Tag {
@@ -113,8 +120,12 @@ function readTag(text: string, open: number): Tag {
 		const character = text[at]!;
 		if (character === '<') throw new XmlFault(at, 'A tag begins inside another');
 		if (character !== '>' && character !== '"' && character !== "'") continue;
-		requireFreeName(text.slice(from, at), from);
-		if (character === '>') {
+		const piece = text.slice(from, at);
+		const ends = character === '>';
+		const [last, valued] = attributes === 0 ? [WHOLE_TAG, FIRST_PIECE] : [LAST_PIECE, NEXT_PIECE];
+		if (!(ends ? last : valued).test(piece)) throw new XmlFault(from, 'A tag is not well-formed');
+		requireFreeName(piece, from);
+		if (ends) {
 			const closes = text[open + 1] === '/';
 			return { end: at + 1, closes, isEmpty: text[at - 1] === '/', attributes };
 		}

@@ -58,7 +58,8 @@ export function readVoEvent(
 
 function requireVoEvent(root: XmlElement): XmlElement {
 	if (root.name !== 'VOEvent') {
-		throw refusal(root.pointer, `is the root element ${shown(root.name)}; a VOEvent was expected`);
+		const name = shown(root.name);
+		throw refusal(`/${name}`, `is the root element; a VOEvent was expected`);
 	}
 	const version = root.attributes.get('version') ?? '';
 	if (version !== '2.0') {

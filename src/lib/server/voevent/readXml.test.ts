@@ -80,6 +80,11 @@ describe('what is refused, naming byte and line, before it can do harm', () => {
 		['a body cut inside CDATA', '<a><![CDATA[ ', /inside a CDATA/],
 		['elements that cross', '<a>\n<b></a></b>', /well-formed.* at byte \d+, line 2/],
 		['two roots', '<a/><b/>', /second root element at byte 4/],
+		['signs without names', '<a ===/>', /not well-formed at byte 1/],
+		['an attribute without a value', '<a b/>', /not well-formed at byte 1/],
+		['an attribute without quotes', '<a b=1/>', /not well-formed at byte 1/],
+		['attributes without a space', `<a b="1"c='2'/>`, /not well-formed at byte 8/],
+		['an empty name', '<a>< b/></a>', /not well-formed at byte 4/],
 		['an attribute twice', '<a b="1" b="2"/>', /repeated.* byte \d/],
 		['a reserved name', '<a><__proto__ b="1"/></a>', /reserved name is used at byte 4/],
 		['a reserved attribute', '<a constructor="1"/>', /reserved name is used at byte 2/]
@@ -89,8 +94,8 @@ describe('what is refused, naming byte and line, before it can do harm', () => {
 		expect(error.code).toBe('malformedBody');
 	});
 
-	it('a body of more than 4 MiB', () => {
-		const error = refusalOf(`<a>${' '.repeat(4 * 1024 * 1024)}</a>`);
+	it('a body of more than 1 MiB', () => {
+		const error = refusalOf(`<a>${' '.repeat(1024 * 1024)}</a>`);
 		expect(statusOf(error.code)).toBe(413);
 	});
 

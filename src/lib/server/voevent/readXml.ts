@@ -4,7 +4,7 @@ import { byteOffset, decodeUtf8 } from '../http/utf8';
 import { guardXml, XmlFault } from './guardXml';
 import type { XmlElement } from './xmlElement';
 
-const LARGEST_BYTES = 4 * 1024 * 1024;
+const LARGEST_BYTES = 1024 * 1024;
 
 const TEXT = '#text';
 const CDATA = '#cdata';
@@ -56,7 +56,7 @@ function requireWellFormed(text: string): void {
 	let start = 0;
 	for (let number = 1; number < line; number++) start = text.indexOf('\n', start) + 1;
 	const index = Math.min(text.length, start + Math.max(0, (col ?? 1) - 1));
-	throw new XmlFault(index, `The XML is not well-formed: ${msg.replace(/\.$/, '')}`);
+	throw new XmlFault(index, `The XML is not well-formed: ${msg.slice(0, 200).replace(/\.$/, '')}`);
 }
 
 function rootOf(text: string): XmlElement {

@@ -157,6 +157,32 @@ describe('citations by IVORN', () => {
 	});
 });
 
+describe('a test that cites what is real', () => {
+	const asTest = (text: string) => text.replace('role="observation"', 'role="test"');
+
+	it.each(['voeventFollowup', 'voeventSupersedes', 'voeventRetraction'])(
+		'%s neither joins it nor takes anything from it, whichever comes first',
+		async (name) => {
+			for (const [ending, testFirst] of [
+				[`t1${name.length}`, false],
+				[`t2${name.length}`, true]
+			] as const) {
+				const report = apart('voeventReport', ending, '2026-11-15');
+				const rehearsal = asTest(apart(name, ending, '2026-11-15'));
+				const order = testFirst ? [rehearsal, report] : [report, rehearsal];
+				const homes = [];
+				for (const text of order) homes.push(designationOf(await send(tambour, text)));
+				expect(homes[0]).not.toBe(homes[1]);
+				const real = await alertRow(`${REPORT}-${ending}`);
+				expect(real.live).toBe(true);
+				const home = await transientRow(homes[testFirst ? 1 : 0]!);
+				expect(home).toMatchObject({ id: real.transientId, isTest: false, state: 'open' });
+				expect((await transientRow(homes[testFirst ? 0 : 1]!)).isTest).toBe(true);
+			}
+		}
+	);
+});
+
 describe('a VOEvent that can’t be read', () => {
 	it('waits in quarantine with its place, and a replay refuses it again', async () => {
 		const text = apart('voeventReport', 'q', '2026-11-26').replace('ICRS-GEO"', 'FK4-GEO"');
