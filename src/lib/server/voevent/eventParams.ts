@@ -35,7 +35,8 @@ export function eventParams(
 			if (text !== undefined) notes.push(`${nameOf(source)} is no number and was left out`);
 			continue;
 		}
-		const value = parsed * source.factor;
+		// A factor of 1/60 or 31557600 must not leave seventeen digits for people to read.
+		const value = source.factor === 1 ? parsed : Number((parsed * source.factor).toPrecision(6));
 		const what = MAPPED_PARAMS[key].label.toLowerCase();
 		if (value >= 0 && value <= MOST[key]) numbers[key] = value;
 		else notes.push(`${nameOf(source)} gives ${value} as ${what} and was left out`);
