@@ -94,5 +94,6 @@ export const ROUTE_GUARDS: Record<string, Guard> = {
 	'/api/v1/transients/[designation=designation]/decision/+server.ts › POST': 'decideTransient',
 	'/api/v1/transients/[designation=designation]/merge/+server.ts › POST': 'regroupAlerts',
 	'/api/v1/transients/[designation=designation]/region/+server.ts › GET': 'viewBoard',
-	'/api/v1/transients/[designation=designation]/take/+server.ts › POST': 'takeTransient'
+	'/api/v1/transients/[designation=designation]/take/+server.ts › POST': 'takeTransient',
+	'/api/v1/transients/[designation=designation]/voevent/+server.ts › GET': 'viewTransients'
 };
