@@ -11,7 +11,9 @@ const OUTLOOKS = 80;
 const SENDERS = 16;
 const SUSTAINED_MS = 15_000;
 /** Packets that each sender keeps updating: bursts of real streams are mostly updates. */
-const PACKETS_PER_SENDER = 20;
+const PACKETS_PER_SENDER = 4;
+/** Transients that the packets sent one by one belong to, so that the board stays of a real size. */
+const BURSTS = 12;
 const POLL_MS = 5;
 const DAY_MS = 86_400_000;
 
@@ -24,11 +26,13 @@ export default async function ingest(): Promise<BenchRow[]> {
 	try {
 		const { origin, streamKeys, databaseUrl } = stack.addresses;
 		const send = sender(origin, streamKeys.tambour);
-		for (let i = 0; i < WARM_UP; i++) await send(`warm-${i}`, 1, i);
+		const sendOne = (name: string, i: number) =>
+			send(`${name}-${i % BURSTS}`, Math.floor(i / BURSTS) + 1, i % BURSTS);
+		for (let i = 0; i < WARM_UP; i++) await sendOne('warm', i);
 		const alone: number[] = [];
-		for (let i = 0; i < ONE_BY_ONE; i++) alone.push((await send(`alone-${i}`, 1, 1000 + i)).ms);
+		for (let i = 0; i < ONE_BY_ONE; i++) alone.push((await sendOne('alone', i)).ms);
 		await settled(databaseUrl);
-		const ready = await outlookTimes(origin, send);
+		const ready = await outlookTimes(origin, sendOne);
 		const sustained = await sustain(send);
 		const { lost, doubled } = await account(databaseUrl, sustained.accepted);
 		return [
@@ -45,7 +49,7 @@ export default async function ingest(): Promise<BenchRow[]> {
 	}
 }
 
-type Sent = { ms: number; designation: string };
+type Sent = { ms: number; designation: string; alertId: string };
 type Send = (packetId: string, serial: number, place: number) => Promise<Sent>;
 
 /** Posts circles: each place of its own on the sky and, apart by minutes, in time. */
@@ -76,19 +80,22 @@ function sender(origin: string, key: string): Send {
 			headers: { authorization: `Bearer ${key}`, 'content-type': 'application/json' },
 			body
 		});
-		const { designation } = (await answer.json()) as { designation: string };
+		const receipt = (await answer.json()) as { designation: string; alertId: string };
 		if (answer.status !== 201) throw new Error(`a packet was answered ${answer.status}`);
-		return { ms: performance.now() - startMs, designation };
+		return { ms: performance.now() - startMs, ...receipt };
 	};
 }
 
 /** From the POST until the board shows an outlook of what was posted, ranked. */
-async function outlookTimes(origin: string, send: Send): Promise<number[]> {
+async function outlookTimes(
+	origin: string,
+	sendOne: (name: string, i: number) => Promise<Sent>
+): Promise<number[]> {
 	const cookie = await signIn(origin);
 	const times: number[] = [];
 	for (let i = 0; i < OUTLOOKS; i++) {
 		const startMs = performance.now();
-		const { designation } = await send(`ready-${i}`, 1, 5000 + i);
+		const { designation, alertId } = await sendOne('ready', i);
 		for (let revision = 0, etag = ''; ; await delay(POLL_MS)) {
 			const answer = await fetch(`${origin}/api/v1/board?since=${revision}`, {
 				headers: { cookie, ...(etag ? { 'if-none-match': etag } : {}) }
@@ -99,7 +106,12 @@ async function outlookTimes(origin: string, send: Send): Promise<number[]> {
 			const board = JSON.parse(text) as Board;
 			revision = board.revision;
 			const shown = board.transients.find((item) => item.designation === designation);
-			if (shown?.outlook && shown.outlook.rows.length > 0) break;
+			if (
+				shown?.parts.some((part) => part.alertId === alertId) &&
+				shown.outlook?.regionVersion === shown.region?.version
+			) {
+				break;
+			}
 		}
 		times.push(performance.now() - startMs);
 	}
