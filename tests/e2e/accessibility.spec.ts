@@ -57,6 +57,7 @@ test.describe('axe finds nothing', () => {
 		await expectAccessible(page, `/now?t=${designation}`, EVERY_LOOK);
 		await expectAccessible(page, '/duty', EVERY_LOOK);
 		await expectAccessible(page, '/now', TWO_LOOKS);
+		await expectAccessible(page, '/transients/new', TWO_LOOKS);
 	});
 
 	test('on a transient, the list and the slots', async ({ page }) => {

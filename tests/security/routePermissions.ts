@@ -55,6 +55,8 @@ export const ROUTE_GUARDS: Record<string, Guard> = {
 	'/(app)/response/table.csv/+server.ts › GET': 'viewResponse',
 	'/(app)/slots/+page.server.ts › load': 'viewSlots',
 	'/(app)/transients/+page.server.ts › load': 'viewTransients',
+	'/(app)/transients/new/+page.server.ts › load': 'submitAlert',
+	'/(app)/transients/new/+page.server.ts › action default': 'submitAlert',
 	'/(app)/transients/[designation=designation]/+page.server.ts › load': 'viewTransients',
 
 	'/(partner)/my/circulars/+page.server.ts › load': 'viewCirculars',

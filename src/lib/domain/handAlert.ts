@@ -8,7 +8,7 @@ import {
 	type HandShape
 } from './handShape';
 import { isoFromUtcText } from './utcText';
-import { ALERT_KINDS } from './vocabulary';
+import { ALERT_KINDS, type StreamClass } from './vocabulary';
 
 const text = z.string().default('');
 
@@ -42,6 +42,7 @@ export type HandAlertFields = z.output<typeof handAlertSchema>;
 export type HandAlertStream = {
 	code: string;
 	name: string;
+	streamClass: StreamClass;
 	/** Percent, when a message does not say. */
 	defaultContainment: number;
 	packetIds: string[];

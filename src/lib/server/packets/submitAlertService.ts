@@ -18,7 +18,7 @@ export async function handAlertStreams(app: App, actor: Actor | null): Promise<H
 		.where(isNull(stream.retiredAt))
 		.orderBy(asc(stream.name));
 	return Promise.all(
-		rows.map(async ({ id, code, name, defaultContainment }) => {
+		rows.map(async ({ id, code, name, streamClass, defaultContainment }) => {
 			const latest = await app.database
 				.select({ packetId: alert.packetId })
 				.from(alert)
@@ -28,6 +28,7 @@ export async function handAlertStreams(app: App, actor: Actor | null): Promise<H
 			return {
 				code,
 				name,
+				streamClass,
 				defaultContainment: Number((defaultContainment * 100).toPrecision(4)),
 				packetIds: [...new Set(latest.map(({ packetId }) => packetId))]
 			};
