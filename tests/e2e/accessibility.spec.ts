@@ -85,7 +85,14 @@ test.describe('axe finds nothing', () => {
 	test('on the network pages', async ({ page }) => {
 		await signInAs(page, 'steward');
 		await expectAccessible(page, '/network', EVERY_LOOK);
-		for (const path of ['telescopes/ALM', 'streams', 'streams/tambour', 'rota', 'people']) {
+		for (const path of [
+			'telescopes/ALM',
+			'streams',
+			'streams/tambour',
+			'quarantine',
+			'rota',
+			'people'
+		]) {
 			await expectAccessible(page, `/network/${path}`, TWO_LOOKS);
 		}
 	});

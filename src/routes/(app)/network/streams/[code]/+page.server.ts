@@ -3,6 +3,7 @@ import { streamEditSchema, streamKeyCreateSchema, streamKeyRevokeSchema } from '
 import { formAction } from '$lib/server/http/formAction';
 import { loadPage } from '$lib/server/http/page';
 import { parseInput } from '$lib/server/http/problem';
+import { streamHealth } from '$lib/server/streams/streamHealthService';
 import { createStreamKey, revokeStreamKey } from '$lib/server/streams/streamKeyService';
 import { editStream, retireStream, streamDetail } from '$lib/server/streams/streamService';
 import type { Actions, PageServerLoad } from './$types';
@@ -14,6 +15,7 @@ export const load: PageServerLoad = (event) =>
 		const { app, actor } = event.locals;
 		return {
 			stream: await streamDetail(app, actor, event.params.code),
+			health: await streamHealth(app, actor, event.params.code),
 			alertsAddress: `${app.config.origin}/api/v1/alerts`
 		};
 	});
