@@ -20,15 +20,13 @@ export function formatBytes(bytes: number): string {
 		: `${Number((kib / 1024).toPrecision(3))} MiB`;
 }
 
-/** Control characters besides tab and line ends, and those that turn the direction of text around. */
-// eslint-disable-next-line no-control-regex -- they are what is looked for
-const INVISIBLE =
-	/[\u0000-\u0008\u000b\u000c\u000e-\u001f\u007f-\u009f\u200b-\u200f\u2028-\u202e\u2060-\u2069\ufeff]/g;
+/** Control characters besides tab and line ends, and those that shape text without being seen. */
+const INVISIBLE = /(?![\t\n\r])[\p{Cc}\p{Cf}\p{Zl}\p{Zp}]/gu;
 
 /** A text with its invisible characters written out, so that it shows what it holds: `\u202e`. */
 export function visibleText(text: string): string {
 	return text.replaceAll(
 		INVISIBLE,
-		(character) => `\\u${character.charCodeAt(0).toString(16).padStart(4, '0')}`
+		(character) => `\\u${character.codePointAt(0)!.toString(16).padStart(4, '0')}`
 	);
 }
