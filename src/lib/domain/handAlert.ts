@@ -7,6 +7,7 @@ import {
 	type FormError,
 	type HandShape
 } from './handShape';
+import { plainIssue } from './plainIssue';
 import { isoFromUtcText } from './utcText';
 import { ALERT_KINDS, type StreamClass } from './vocabulary';
 
@@ -102,12 +103,13 @@ export function readHandAlert(fields: HandAlertFields): HandAlert {
 		remarks: fields.remarks.trim()
 	};
 	const known = new Set(errors.map(({ pointer }) => pointer));
-	for (const issue of alertPacketSchema.safeParse(packet).error?.issues ?? []) {
+	for (const issue of alertPacketSchema.safeParse(packet, { error: plainIssue }).error?.issues ??
+		[]) {
 		const [first = ''] = issue.path;
 		const field = FIELD_OF[String(first)] ?? String(first);
 		// The shape's own fields have spoken already.
 		if (known.has(`/${field}`) || (field === 'shape' && read?.shape === null)) continue;
-		fail(field, issue.message);
+		fail(field, `${issue.message[0]!.toUpperCase()}${issue.message.slice(1)}.`);
 	}
 	return { packet: errors.length === 0 ? packet : null, errors, folded: read?.folded ?? [] };
 }
