@@ -11,7 +11,8 @@ export const PERMISSIONS = {
 	takeTransient: ['duty'],
 	decideTransient: ['duty'],
 	regroupAlerts: ['duty', 'steward'],
-	enterAlert: ['duty', 'steward'],
+	/** By hand or from a file, what did not come over a stream's own way. */
+	submitAlert: ['duty', 'steward'],
 
 	viewSlots: ['duty', 'observer', 'pi', 'steward'],
 	/** On the telescopes they work with. */

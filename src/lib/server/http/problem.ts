@@ -1,5 +1,6 @@
 import { json } from '@sveltejs/kit';
 import type { z } from 'zod';
+import { plainIssue } from '../../domain/plainIssue';
 import { DomainError, type DomainErrorCode, type FieldError } from '../domainError';
 
 /** The one table of codes and HTTP statuses. */
@@ -74,7 +75,7 @@ export function parseInput<Schema extends z.ZodType>(
 	schema: Schema,
 	input: unknown
 ): z.output<Schema> {
-	const parsed = schema.safeParse(input);
+	const parsed = schema.safeParse(input, { error: plainIssue });
 	if (parsed.success) return parsed.data;
 	throw new DomainError('invalid', 'Some fields are not valid.', fieldErrorsOf(parsed.error));
 }

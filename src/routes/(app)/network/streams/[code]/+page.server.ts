@@ -14,6 +14,7 @@ import {
 	removeSocket,
 	switchSocket
 } from '$lib/server/sockets/socketService';
+import { streamHealth } from '$lib/server/streams/streamHealthService';
 import { createStreamKey, revokeStreamKey } from '$lib/server/streams/streamKeyService';
 import { editStream, retireStream, streamDetail } from '$lib/server/streams/streamService';
 import type { Actions, PageServerLoad } from './$types';
@@ -26,6 +27,7 @@ export const load: PageServerLoad = (event) =>
 		return {
 			stream: await streamDetail(app, actor, event.params.code),
 			sockets: await listSockets(app, actor, event.params.code),
+			health: await streamHealth(app, actor, event.params.code),
 			alertsAddress: `${app.config.origin}/api/v1/alerts`
 		};
 	});
