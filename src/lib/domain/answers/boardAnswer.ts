@@ -5,7 +5,6 @@ import {
 	instant,
 	personRefSchema,
 	position,
-	share,
 	shapeAnswerSchema
 } from './commonAnswers';
 import { outlookRowSchema, outlookSchema } from './outlookAnswer';

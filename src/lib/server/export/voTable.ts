@@ -43,7 +43,7 @@ export function voTable<Row>({
 
 function field<Row>(column: TableColumn<Row>, rows: Row[]): string {
 	// A char is ASCII in VOTable 1.4 (section 2.1); names are typed in by people.
-	const isAscii = rows.every((row) => /^[\u0000-\u007f]*$/.test(cell(column.value(row))));
+	const isAscii = rows.every((row) => !/[^\t\n\r\u0020-\u007e]/.test(cell(column.value(row))));
 	const attributes = {
 		name: column.name,
 		datatype: isAscii ? column.datatype : 'unicodeChar',
