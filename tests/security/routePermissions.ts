@@ -42,6 +42,9 @@ export const ROUTE_GUARDS: Record<string, Guard> = {
 	'/(app)/network/streams/[code]/+page.server.ts › action save': 'editStreams',
 	'/(app)/network/streams/[code]/+page.server.ts › action createKey': 'editStreams',
 	'/(app)/network/streams/[code]/+page.server.ts › action revokeKey': 'editStreams',
+	'/(app)/network/streams/[code]/+page.server.ts › action addSocket': 'editStreams',
+	'/(app)/network/streams/[code]/+page.server.ts › action switchSocket': 'editStreams',
+	'/(app)/network/streams/[code]/+page.server.ts › action removeSocket': 'editStreams',
 	'/(app)/network/streams/[code]/+page.server.ts › action retire': 'editStreams',
 	'/(app)/network/streams/new/+page.server.ts › load': 'editStreams',
 	'/(app)/network/streams/new/+page.server.ts › action default': 'editStreams',
@@ -98,5 +101,6 @@ export const ROUTE_GUARDS: Record<string, Guard> = {
 	'/api/v1/transients/[designation=designation]/decision/+server.ts › POST': 'decideTransient',
 	'/api/v1/transients/[designation=designation]/merge/+server.ts › POST': 'regroupAlerts',
 	'/api/v1/transients/[designation=designation]/region/+server.ts › GET': 'viewBoard',
-	'/api/v1/transients/[designation=designation]/take/+server.ts › POST': 'takeTransient'
+	'/api/v1/transients/[designation=designation]/take/+server.ts › POST': 'takeTransient',
+	'/api/v1/transients/[designation=designation]/voevent/+server.ts › GET': 'viewTransients'
 };

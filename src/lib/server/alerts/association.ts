@@ -47,9 +47,15 @@ export type Arrival = {
  * else of what already cites it, else the one it agrees with best (science: Budavári & Szalay 2008).
  */
 export async function placeAlert(tx: Transaction, arrival: Arrival): Promise<Placement> {
-	const { packet, serials } = arrival;
-	const cited = await citedAlerts(tx, packet.cites);
-	const citing = await citingAlerts(tx, arrival.streamCode, packet.packetId);
+	const { packet } = arrival;
+	// A test neither joins, replaces nor retracts what is real, nor the other way round.
+	const serials = arrival.serials.filter((row) => row.role === packet.role);
+	const cited = (await citedAlerts(tx, packet.cites)).filter(
+		({ alert }) => alert.role === packet.role
+	);
+	const citing = (await citingAlerts(tx, arrival.streamCode, packet.packetId)).filter(
+		({ alert }) => alert.role === packet.role
+	);
 
 	const overtaken =
 		serials.some((row) => row.serial > packet.serial) ||
