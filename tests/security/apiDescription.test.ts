@@ -5,8 +5,7 @@ import { ROUTE_GUARDS } from './routePermissions';
 /** Handlers that are listed before they are there: what they give out is made elsewhere in the same release. */
 const TO_COME = [
 	'GET /transients/{designation}/region.fits',
-	'GET /transients/{designation}/region.moc',
-	'GET /transients/{designation}/voevent'
+	'GET /transients/{designation}/region.moc'
 ];
 
 const modules = import.meta.glob<Record<string, unknown>>('/src/routes/api/v1/**/+server.ts');
