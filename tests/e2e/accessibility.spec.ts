@@ -109,4 +109,9 @@ test.describe('axe finds nothing', () => {
 		await expectAccessible(page, '/auth/sign-in', TWO_LOOKS);
 		await expectAccessible(page, '/auth/demo', TWO_LOOKS);
 	});
+
+	test('on the description of the API', async ({ page }) => {
+		await page.goto('/api');
+		await expectAccessible(page, '/api', EVERY_LOOK);
+	});
 });

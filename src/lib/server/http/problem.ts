@@ -4,7 +4,7 @@ import { plainIssue } from '../../domain/plainIssue';
 import { DomainError, type DomainErrorCode, type FieldError } from '../domainError';
 
 /** The one table of codes and HTTP statuses. */
-const STATUS: Record<DomainErrorCode, { status: number; title: string }> = {
+export const PROBLEMS: Record<DomainErrorCode, { status: number; title: string }> = {
 	notSignedIn: { status: 401, title: 'Not signed in' },
 	notAllowed: { status: 403, title: 'Not allowed' },
 	notFound: { status: 404, title: 'Not found' },
@@ -25,12 +25,12 @@ const STATUS: Record<DomainErrorCode, { status: number; title: string }> = {
 };
 
 export function statusOf(code: DomainErrorCode): number {
-	return STATUS[code].status;
+	return PROBLEMS[code].status;
 }
 
 /** Answers a refusal as `application/problem+json` (RFC 9457) with an `errors` list for fields. */
 export function problemResponse(error: DomainError): Response {
-	const { status, title } = STATUS[error.code];
+	const { status, title } = PROBLEMS[error.code];
 	return json(
 		{
 			type: `urn:duskline:problem:${error.code}`,
