@@ -46,7 +46,10 @@ export async function writeTransaction<T>(
 	}
 }
 
-/** One statement: everybody waits for the revision's row. */
+/**
+ * One statement moves both, as everybody waits for the revision's row. The transients are locked before it: who
+ * has changed one waits for the revision, and who holds the revision must not wait for that one.
+ */
 async function moveRevision(
 	tx: Transaction,
 	touched: Set<string>,
@@ -56,6 +59,11 @@ async function moveRevision(
 		[...touched].map((id) => sql`${id}::uuid`),
 		sql`, `
 	);
+	if (touched.size > 0) {
+		await tx.execute(
+			sql`select 1 from ${transient} where id in (${ids}) order by id for no key update`
+		);
+	}
 	const touch =
 		touched.size > 0
 			? sql`, touched as (
