@@ -38,6 +38,7 @@ Ports, all on 127.0.0.1 (variable, default):
   DUSKLINE_SMTP_PORT       +2     the mailbox's SMTP
   DUSKLINE_PUSH_PORT       +3     the push service
   DUSKLINE_PUSH_PAGE_PORT  +4     the push service's page
+  DUSKLINE_STORAGE_PORT    +7     the object storage
   DUSKLINE_PG_PORT         54329  PostgreSQL
 
 Others: DUSKLINE_FEED=off leaves out the demo feed; LOG_LEVEL (info); DUSKLINE_PG_BIN and
@@ -52,6 +53,7 @@ read_ports() {
 	SMTP_PORT=${DUSKLINE_SMTP_PORT:-$((PORT + 2))}
 	PUSH_PORT=${DUSKLINE_PUSH_PORT:-$((PORT + 3))}
 	PUSH_PAGE_PORT=${DUSKLINE_PUSH_PAGE_PORT:-$((PORT + 4))}
+	STORAGE_PORT=${DUSKLINE_STORAGE_PORT:-$((PORT + 7))}
 	PG_PORT=${DUSKLINE_PG_PORT:-54329}
 }
 
@@ -119,7 +121,7 @@ run_demo() {
 	print_welcome
 	start_feed
 	STOPPING_TEXT='Stopping'
-	watch_over app mailbox push postgres
+	watch_over app mailbox push storage postgres
 }
 
 # Ends what an earlier start left running when it was cut off.

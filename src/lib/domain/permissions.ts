@@ -11,7 +11,8 @@ export const PERMISSIONS = {
 	takeTransient: ['duty'],
 	decideTransient: ['duty'],
 	regroupAlerts: ['duty', 'steward'],
-	enterAlert: ['duty', 'steward'],
+	/** By a form: typed, or as a file. */
+	submitAlert: ['duty', 'steward'],
 
 	viewSlots: ['duty', 'observer', 'pi', 'steward'],
 	/** On the telescopes they work with. */

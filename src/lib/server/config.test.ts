@@ -45,6 +45,22 @@ describe('parseConfig', () => {
 		}
 	});
 
+	it('takes object storage whole or not at all', () => {
+		const storage = {
+			STORAGE_URL: 'https://storage.example',
+			STORAGE_BUCKET: 'files',
+			STORAGE_ACCESS_KEY: 'key',
+			STORAGE_SECRET_KEY: 'secret'
+		};
+		expect(parseConfig(GOOD).storage).toBeNull();
+		expect(parseConfig({ ...GOOD, ...storage }).storage).toMatchObject({ region: 'us-east-1' });
+		expect(refusalOf({ ...GOOD, ...storage, STORAGE_SECRET_KEY: undefined })).toMatch(
+			/STORAGE_URL needs STORAGE_SECRET_KEY too/
+		);
+		expect(refusalOf({ ...GOOD, ...storage, STORAGE_BUCKET: 'Files' })).toMatch(/STORAGE_BUCKET/);
+		expect(refusalOf({ ...GOOD, ...storage, STORAGE_URL: 's3://files' })).toMatch(/STORAGE_URL/);
+	});
+
 	it('refuses half a set of push keys and a short secret', () => {
 		expect(refusalOf({ ...GOOD, VAPID_PUBLIC_KEY: 'key' })).toMatch(/go together/);
 		expect(refusalOf({ ...GOOD, AUTH_SECRET: 'short' })).toMatch(/AUTH_SECRET must be at least 32/);

@@ -13,6 +13,7 @@ import { join } from 'node:path';
 import { setTimeout as delay } from 'node:timers/promises';
 import webPush from 'web-push';
 import { startMailbox } from '../../../fakes/mailbox';
+import { startObjectStore } from '../../../fakes/objectStore';
 import { startPushService } from '../../../fakes/pushService';
 import { freePort, startCluster } from '../../database/cluster';
 import { administer } from '../../database/templateDatabase';
@@ -48,6 +49,17 @@ export async function startStack(): Promise<Stack> {
 		stops.push(mailbox.close);
 		const push = await startPushService({ pushPort: 0, httpPort: 0, stateDirectory: directory });
 		stops.push(push.close);
+		const keys = {
+			bucket: 'duskline',
+			accessKey: 'duskline',
+			secretKey: randomBytes(16).toString('hex')
+		};
+		const storage = await startObjectStore({
+			port: 0,
+			stateDirectory: join(directory, 'storage'),
+			...keys
+		});
+		stops.push(storage.close);
 
 		const port = await freePort();
 		const keysFile = join(directory, 'demo-keys.json');
@@ -57,7 +69,8 @@ export async function startStack(): Promise<Stack> {
 			keysFile,
 			smtpUrl: mailbox.smtpUrl,
 			mailboxUrl: mailbox.url,
-			certificatePath: push.certificatePath
+			certificatePath: push.certificatePath,
+			storage: { url: storage.url, ...keys }
 		});
 		for (const script of ['src/lib/server/db/migrate.ts', 'src/lib/server/demo/seed.ts']) {
 			execFileSync('node', ['--import', 'tsx', script], { env: environment, stdio: 'inherit' });
@@ -91,6 +104,7 @@ function environmentOf(parts: {
 	smtpUrl: string;
 	mailboxUrl: string;
 	certificatePath: string;
+	storage: { url: string; bucket: string; accessKey: string; secretKey: string };
 }): NodeJS.ProcessEnv {
 	const vapid = webPush.generateVAPIDKeys();
 	return {
@@ -101,12 +115,16 @@ function environmentOf(parts: {
 		ORIGIN: `http://127.0.0.1:${parts.port}`,
 		HOST: '127.0.0.1',
 		PORT: String(parts.port),
-		BODY_SIZE_LIMIT: '64M',
+		BODY_SIZE_LIMIT: '66M',
 		AUTH_SECRET: randomBytes(32).toString('hex'),
 		SMTP_URL: parts.smtpUrl,
 		VAPID_PUBLIC_KEY: vapid.publicKey,
 		VAPID_PRIVATE_KEY: vapid.privateKey,
 		VAPID_SUBJECT: 'mailto:duty@duskline.example',
+		STORAGE_URL: parts.storage.url,
+		STORAGE_BUCKET: parts.storage.bucket,
+		STORAGE_ACCESS_KEY: parts.storage.accessKey,
+		STORAGE_SECRET_KEY: parts.storage.secretKey,
 		NODE_EXTRA_CA_CERTS: parts.certificatePath,
 		DUSKLINE_DEMO: 'on',
 		DUSKLINE_DEMO_KEYS_FILE: parts.keysFile,
