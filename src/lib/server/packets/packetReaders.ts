@@ -1,5 +1,6 @@
 import type { App } from '../app';
 import { DomainError } from '../domainError';
+import { readFilePacket } from './readFilePacket';
 import { readJsonPacket } from './readJsonPacket';
 import type { KeptPacket, ReadOutcome, StreamRow } from './readOutcome';
 
@@ -11,7 +12,8 @@ export type PacketReader = (
 
 /** By media type; what is not here is refused. */
 const READERS: Record<string, PacketReader> = {
-	'application/json': readJsonPacket
+	'application/json': readJsonPacket,
+	'multipart/form-data': readFilePacket
 };
 
 /** What a body says, by its media type, read with the stream's settings as they are now. */
