@@ -7,7 +7,7 @@ import { FileFault } from '../fits/fileFault';
 import { fitsOf, type TestColumn } from '../fits/testing/fitsOf';
 import { readSkyFile } from './readSkyFile';
 
-// Made by astropy 5.2.1 and healpy 1.16.2 (fixtures/scripts/make_fits.py).
+// Made by astropy 5.2.1 and healpy 1.16.1 (fixtures/scripts/make_fits.py).
 const fixture = (path: string) => new Uint8Array(readFileSync(`fixtures/${path}`));
 // IVOA MOC 2.0, sections 4.3.2 and appendix.
 const standard = JSON.parse(readFileSync('fixtures/sky/moc-2.0-examples.json', 'utf8')) as {
@@ -77,7 +77,7 @@ describe('a map of one order', () => {
 		];
 		const scheme = { INDXSCHM: 'EXPLICIT', ORDERING: 'RING' };
 		expect(readSkyFile(fitsOf(list, { ...cards, ...scheme }))).toEqual(shape);
-		// healpy 1.16.2: ring2nest(2, [0, 47]) = [3, 44].
+		// healpy 1.16.1: ring2nest(2, [0, 47]) = [3, 44].
 		const last = shape.uniq.indexOf(16 + 44);
 		expect(shape.density[last]! * cellAreaSr(1)).toBeCloseTo(47 / (24 * 47), 7);
 	});
