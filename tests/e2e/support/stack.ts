@@ -19,7 +19,12 @@ import { freePort, startCluster } from '../../database/cluster';
 import { administer } from '../../database/templateDatabase';
 import type { StackAddresses } from './addresses';
 
-export type Stack = { addresses: StackAddresses; stop: () => Promise<void> };
+export type Stack = {
+	addresses: StackAddresses;
+	/** Of the application, for measuring its memory. */
+	applicationPid: number;
+	stop: () => Promise<void>;
+};
 
 const START_TIMEOUT_MS = 60_000;
 const STOP_TIMEOUT_MS = 10_000;
@@ -89,6 +94,7 @@ export async function startStack(): Promise<Stack> {
 				databaseUrl: cluster.urlOf('duskline'),
 				streamKeys: streams
 			},
+			applicationPid: application.pid!,
 			stop
 		};
 	} catch (error) {
