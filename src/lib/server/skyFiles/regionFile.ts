@@ -14,9 +14,12 @@ export type RegionFileInput = {
 	computedAt: string;
 };
 
+/** Programs that keep pixels in 32 bits end here. */
+const DEEP_ORDER = 13;
+
 /** The joint region as a multi-order HEALPix map of the whole sky: UNIQ and PROBDENSITY, ICRS, ascending. */
 export function regionFile({ shapes, search, ...names }: RegionFileInput): Uint8Array {
-	const cells = jointCells(shapes, search);
+	const { cells, isApart } = jointCells(shapes, search);
 	const { finest } = cells;
 	const rows: { uniq: number; density: number }[] = [];
 	let reached = 0;
@@ -45,8 +48,11 @@ export function regionFile({ shapes, search, ...names }: RegionFileInput): Uint8
 		cardsOf(finest, names),
 		[
 			'Joint region of all alerts that belong to the transient, and of what was searched in vain.',
-			'Cells of order 14 and finer are smaller than many programs read.'
-		].slice(0, finest > 13 ? 2 : 1)
+			...(isApart
+				? ['The alerts contradict each other: this is their mixture, each counted once.']
+				: []),
+			...(finest > DEEP_ORDER ? ['Cells finer than order 13 are not read by every program.'] : [])
+		]
 	);
 }
 
