@@ -11,7 +11,7 @@ export const PERMISSIONS = {
 	takeTransient: ['duty'],
 	decideTransient: ['duty'],
 	regroupAlerts: ['duty', 'steward'],
-	/** By a form: typed, or as a file. */
+	/** By hand or from a file, what did not come over a stream's own way. */
 	submitAlert: ['duty', 'steward'],
 
 	viewSlots: ['duty', 'observer', 'pi', 'steward'],
