@@ -16,6 +16,8 @@ const FRAMES: Record<string, MapFrame> = {
 };
 /** Greatest order of a map that lists its pixels: the library packs indices into 32-bit integers. */
 const LISTED_ORDER_MAX = 13;
+/** Rows of a map that lists its cells: 128 MiB of them, of which a thread needs several times as much. */
+const ROWS_MAX = 8_000_000;
 
 type Source = { map: MapSource; values: TableColumn; cells: TableColumn | null };
 
@@ -123,6 +125,9 @@ function valueColumn(table: BinaryTable): TableColumn {
 }
 
 function requireSingle(table: BinaryTable, { number, repeat, name }: TableColumn): void {
+	if (table.rowCount > ROWS_MAX) {
+		throw table.header.fault('NAXIS2', `is ${table.rowCount}; at most ${ROWS_MAX} cells are read`);
+	}
 	if (repeat === 1) return;
 	throw table.header.fault(`TFORM${number}`, `has ${repeat} elements; ${name} must have one a row`);
 }

@@ -3,6 +3,9 @@ import { MOC_ORDER } from '../../sky/healpix/healpix';
 import { columnNamed, elementPlace, integersOf, type BinaryTable } from '../fits/binaryTable';
 import { FileFault } from '../fits/fileFault';
 
+/** Numbers that a coverage map may have: a million ranges are far more than any region needs. */
+const NUMBERS_MAX = 2_000_000;
+
 /** Whether a table holds a coverage map (IVOA MOC 1.1 and 2.0): ranges, or UNIQ numbers and nothing else. */
 export function isMocTable({ header, columns }: BinaryTable): boolean {
 	const ordering = header.has('ORDERING') ? (header.text('ORDERING') ?? '') : '';
@@ -20,6 +23,10 @@ export function readMocTable(table: BinaryTable): MocRanges {
 	const frame = header.has('COORDSYS') ? (header.text('COORDSYS') ?? '') : 'C';
 	if (frame !== 'C') {
 		throw header.fault('COORDSYS', `is '${frame}'; coverage maps are in C (ICRS)`);
+	}
+	const numbers = table.rowCount * soleColumn(table, 'UNIQ').repeat;
+	if (numbers > NUMBERS_MAX) {
+		throw header.fault('NAXIS2', `makes ${numbers} numbers; at most ${NUMBERS_MAX} are read`);
 	}
 	const ordering = header.text('ORDERING') ?? '';
 	if (ordering === 'NUNIQ' || ordering === 'UNIQ') return normalForm(fromUniq(table));

@@ -136,6 +136,15 @@ describe('a coverage map', () => {
 	});
 });
 
+describe('a coverage map without end', () => {
+	it('is refused before it is read', () => {
+		const values = new Array<number>(2_000_002).fill(0);
+		const table = fitsOf([{ name: 'RANGE', form: 'K', values }], { ORDERING: 'RANGE' });
+		expect(faultOf(table)).toMatch(/^HDU 1, NAXIS2 makes 2000002 numbers; at most 2000000/);
+		expect(faultOf(bytesOf(`1/${'1 '.repeat(3_000_000)}`))).toMatch(/^byte 0 is not the start/);
+	});
+});
+
 describe('a file', () => {
 	it('that inflates to far more than its size is refused while it inflates', () => {
 		const bomb = gzipSync(new Uint8Array(80 * 1024 * 1024));

@@ -9,7 +9,7 @@ import { isMocTable, readMocTable } from './readMocTable';
 import { readHealpixMap } from './readHealpixMap';
 
 /** Longest coverage map in text. */
-const TEXT_BYTES_MAX = 16 * 1024 * 1024;
+const TEXT_BYTES_MAX = 4 * 1024 * 1024;
 
 /**
  * Reads a file with a region: a HEALPix probability map in FITS, or a coverage map in FITS, JSON or ASCII; any of
