@@ -33,13 +33,15 @@ Usage: $SELF [command]
   help     this text
 
 Ports, all on 127.0.0.1 (variable, default):
-  DUSKLINE_PORT            4180   the application
-  DUSKLINE_MAILBOX_PORT    +1     the mailbox page
-  DUSKLINE_SMTP_PORT       +2     the mailbox's SMTP
-  DUSKLINE_PUSH_PORT       +3     the push service
-  DUSKLINE_PUSH_PAGE_PORT  +4     the push service's page
-  DUSKLINE_STORAGE_PORT    +7     the object storage
-  DUSKLINE_PG_PORT         54329  PostgreSQL
+  DUSKLINE_PORT             4180   the application
+  DUSKLINE_MAILBOX_PORT     +1     the mailbox page
+  DUSKLINE_SMTP_PORT        +2     the mailbox's SMTP
+  DUSKLINE_PUSH_PORT        +3     the push service
+  DUSKLINE_PUSH_PAGE_PORT   +4     the push service's page
+  DUSKLINE_BROKER_PORT      +5     the VOEvent broker
+  DUSKLINE_BROKER_PAGE_PORT +6     the VOEvent broker's page
+  DUSKLINE_STORAGE_PORT     +7     the object storage
+  DUSKLINE_PG_PORT          54329  PostgreSQL
 
 Others: DUSKLINE_FEED=off leaves out the demo feed; LOG_LEVEL (info); DUSKLINE_PG_BIN and
 DUSKLINE_CHROMIUM name other programs than Debian's. All data lie under .local/.
@@ -53,6 +55,8 @@ read_ports() {
 	SMTP_PORT=${DUSKLINE_SMTP_PORT:-$((PORT + 2))}
 	PUSH_PORT=${DUSKLINE_PUSH_PORT:-$((PORT + 3))}
 	PUSH_PAGE_PORT=${DUSKLINE_PUSH_PAGE_PORT:-$((PORT + 4))}
+	BROKER_PORT=${DUSKLINE_BROKER_PORT:-$((PORT + 5))}
+	BROKER_PAGE_PORT=${DUSKLINE_BROKER_PAGE_PORT:-$((PORT + 6))}
 	STORAGE_PORT=${DUSKLINE_STORAGE_PORT:-$((PORT + 7))}
 	PG_PORT=${DUSKLINE_PG_PORT:-54329}
 }
@@ -121,7 +125,7 @@ run_demo() {
 	print_welcome
 	start_feed
 	STOPPING_TEXT='Stopping'
-	watch_over app mailbox push storage postgres
+	watch_over app mailbox push broker storage postgres
 }
 
 # Ends what an earlier start left running when it was cut off.

@@ -17,7 +17,8 @@ export default defineConfig({
 						'src/**/*.test.ts',
 						'fakes/**/*.test.ts',
 						'scripts/**/*.test.ts',
-						'tests/unit/**/*.test.ts'
+						'tests/unit/**/*.test.ts',
+						'tests/fuzz/**/*.test.ts'
 					],
 					exclude: ['**/*.db.test.ts']
 				}

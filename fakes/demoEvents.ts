@@ -1,5 +1,6 @@
 import type { AlertPacket } from '../src/lib/domain/alertPacket';
 import type { Equatorial } from '../src/lib/sky/angle';
+import { demoIvorn } from './demoVoEvent';
 import { antisolarPosition, between, measuredCircle, type Draw } from './demoSky';
 
 export type DemoStream = 'tambour' | 'carapace' | 'needle';
@@ -22,6 +23,9 @@ const SHARES: [Story, number][] = [
 	['test', 0.1]
 ];
 const RESEND_SHARE = 0.15;
+/** Of the images that no X-ray position follows, how many are looked at again: then improved, or withdrawn. */
+const IMAGE_IMPROVED_SHARE = 0.4;
+const IMAGE_WITHDRAWN_SHARE = 0.15;
 
 /** Draws the next story by how often each occurs. */
 export function drawStory(draw: Draw): Story {
@@ -73,6 +77,8 @@ export function planStory(draw: Draw, story: Story, t0Ms: number): PlannedPacket
 				remarks: 'Uncatalogued, fading X-ray source.'
 			});
 			planned.push({ delayS: 75, stream: 'needle', packet: position });
+		} else {
+			planned.push(...imageRevisited(draw, truth, t0Ms, image));
 		}
 	}
 	if (story === 'retracted') {
@@ -95,6 +101,43 @@ export function planStory(draw: Draw, story: Story, t0Ms: number): PlannedPacket
 		planned.push({ delayS: 12, stream: 'tambour', packet: first });
 	}
 	return planned.sort((a, b) => a.delayS - b.delayS);
+}
+
+/** What the ground makes of an image; packets of VOEvent streams have no serials but cite what they replace. */
+function imageRevisited(
+	draw: Draw,
+	truth: Equatorial,
+	t0Ms: number,
+	image: AlertPacket
+): PlannedPacket[] {
+	const outcome = draw();
+	const delayS = Math.round(between(draw, 70, 140));
+	const packetId = `${image.packetId}-2`;
+	if (outcome < IMAGE_IMPROVED_SHARE) {
+		const packet: AlertPacket = {
+			...xrayReport(draw, truth, t0Ms, 'carapace', between(draw, 0.4, 0.9) / 60, {
+				significance: between(draw, 10, 30),
+				cites: [{ stream: 'carapace', packetId: image.packetId, relation: 'supersedes' }],
+				remarks: 'Position from all of the exposure.'
+			}),
+			packetId,
+			kind: 'update'
+		};
+		return [{ delayS, stream: 'carapace', packet }];
+	}
+	if (outcome > 1 - IMAGE_WITHDRAWN_SHARE) {
+		const packet: AlertPacket = {
+			packetId,
+			serial: 1,
+			role: 'observation',
+			kind: 'retraction',
+			cites: [{ stream: 'carapace', packetId: image.packetId, relation: 'retraction' }],
+			t0: image.t0,
+			remarks: 'Scattered light, not a source.'
+		};
+		return [{ delayS, stream: 'carapace', packet }];
+	}
+	return [];
 }
 
 function gammaReport(
@@ -150,10 +193,13 @@ function xrayReport(
 	};
 }
 
-/** Stream prefix, date and time of day of T0: unique over restarts, as bursts are minutes apart. */
+/**
+ * An IVORN, as streams cite each other by it: stream prefix, date and time of day of T0, unique over restarts,
+ * as bursts are minutes apart.
+ */
 function packetIdOf(stream: DemoStream, t0Ms: number): string {
 	const digits = new Date(t0Ms).toISOString().replace(/\D/g, '');
-	return `${PREFIX[stream]}-${digits.slice(0, 8)}-${digits.slice(8, 14)}`;
+	return demoIvorn(stream, `${PREFIX[stream]}-${digits.slice(0, 8)}-${digits.slice(8, 14)}`);
 }
 
 function round(value: number, digits: number): number {

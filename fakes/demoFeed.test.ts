@@ -2,10 +2,12 @@ import { Body, GeoVector } from 'astronomy-engine';
 import { describe, expect, it } from 'vitest';
 import { alertPacketSchema } from '../src/lib/domain/alertPacket';
 import { separationDeg, toEquatorial } from '../src/lib/sky/vector';
+import { XMLParser } from 'fast-xml-parser';
 import { drawStory, planStory, type Story } from './demoEvents';
 import { runFeed, type FeedOptions } from './demoFeed';
 import { measuredCircle, seededDraw } from './demoSky';
-import { serveLoopback, readJson, type Answer } from './loopbackServer';
+import { demoVoEvent } from './demoVoEvent';
+import { serveLoopback, readBody, type Answer } from './loopbackServer';
 
 const T0_MS = Date.UTC(2026, 11, 1, 3, 41, 27);
 const STORIES: Story[] = ['localised', 'imaged', 'gammaOnly', 'refined', 'retracted', 'test'];
@@ -76,8 +78,82 @@ describe('a story', () => {
 	});
 });
 
+describe('a VOEvent', () => {
+	const parser = new XMLParser({ ignoreAttributes: false, removeNSPrefix: true });
+	const read = (xml: string) =>
+		(parser.parse(xml, true) as { VOEvent: Record<string, unknown> }).VOEvent;
+	const planned = (outcome: 'update' | 'retraction') => {
+		for (let seed = 1; ; seed += 1) {
+			const packets = planStory(seededDraw(seed), 'imaged', T0_MS);
+			const found = packets.filter(({ packet }) => packet.kind === outcome);
+			if (found.length > 0) return packets.filter(({ stream }) => stream === 'carapace');
+		}
+	};
+
+	it('says where and when, how sure and what it follows', () => {
+		const { packet } = planned('update')[0]!;
+		if (packet.shape?.kind !== 'circle') throw new Error('an image is a circle');
+		const { centre, radiusDeg } = packet.shape;
+		expect(read(demoVoEvent(packet, new Date(T0_MS + 30_000)))).toMatchObject({
+			'@_version': '2.0',
+			'@_role': 'observation',
+			'@_ivorn': 'ivo://carapace.example/alerts#CP-20261201-034127',
+			Who: { AuthorIVORN: 'ivo://carapace.example/alerts', Date: '2026-12-01T03:41:57.000' },
+			What: {
+				Group: {
+					'@_name': 'detection',
+					Param: [
+						{ '@_name': 'significance', '@_value': String(packet.significance) },
+						{ '@_name': 'false_alarm_rate', '@_value': String(packet.falseAlarmPerYear) }
+					]
+				}
+			},
+			WhereWhen: {
+				ObsDataLocation: {
+					ObservationLocation: {
+						AstroCoordSystem: { '@_id': 'UTC-ICRS-GEO' },
+						AstroCoords: {
+							'@_coord_system_id': 'UTC-ICRS-GEO',
+							Time: { TimeInstant: { ISOTime: '2026-12-01T03:41:27.000' } },
+							Position2D: {
+								'@_unit': 'deg',
+								Value2: { C1: centre.raDeg, C2: centre.decDeg },
+								Error2Radius: radiusDeg
+							}
+						}
+					}
+				}
+			},
+			Citations: {
+				EventIVORN: {
+					'@_cite': 'followup',
+					'#text': 'ivo://tambour.example/alerts#TB-20261201-034127'
+				}
+			}
+		});
+	});
+
+	it.each([
+		['update', 'supersedes'],
+		['retraction', 'retraction']
+	] as const)('of kind %s is a packet of its own and cites what it replaces', (kind, cite) => {
+		const [first, second] = planned(kind);
+		const xml = read(demoVoEvent(second!.packet, new Date(T0_MS)));
+		expect(xml['@_ivorn']).not.toBe(first!.packet.packetId);
+		expect(xml.Citations).toEqual({
+			EventIVORN: { '@_cite': cite, '#text': first!.packet.packetId }
+		});
+		expect(JSON.stringify(xml).includes('Position2D')).toBe(kind === 'update');
+	});
+
+	it('is not made of what VOEvent can’t say', () => {
+		const { packet } = planned('update')[0]!;
+		expect(() => demoVoEvent({ ...packet, serial: 2 }, new Date())).toThrow(/can’t be written/);
+	});
+});
+
 describe('the feed', () => {
-	type Seen = { key: string; body: Record<string, unknown> };
+	type Seen = { path: string; key: string; body: string };
 
 	/** Runs the feed on a clock that only its own waits advance, until `packets` were answered. */
 	const feedInto = async (packets: number, statusOf: (call: number) => number) => {
@@ -85,13 +161,16 @@ describe('the feed', () => {
 		const lines: string[] = [];
 		const waitsMs: number[] = [];
 		const stop = new AbortController();
-		const server = await serveLoopback(async (request): Promise<Answer> => {
-			seen.push({ key: request.headers.authorization ?? '', body: await readJson(request) });
+		// The application and the broker in one: their addresses differ by the path alone.
+		const server = await serveLoopback(async (request, { pathname }): Promise<Answer> => {
+			const body = (await readBody(request)).toString('utf8');
+			seen.push({ path: pathname, key: request.headers.authorization ?? '', body });
 			return { status: statusOf(seen.length), json: {} };
 		}, 0);
 		let clockMs = T0_MS;
 		const options: FeedOptions = {
 			origin: server.origin,
+			brokerUrl: `${server.origin}/broker`,
 			keys: { tambour: 'kt', carapace: 'kc', needle: 'kn' },
 			draw: seededDraw(21),
 			log: (line) => {
@@ -111,19 +190,30 @@ describe('the feed', () => {
 		return { seen, lines, waitsMs, elapsedMs: clockMs - T0_MS };
 	};
 
-	it('posts each packet with its stream’s key, the first within 20 s', async () => {
+	it('posts each packet with its stream’s key, or to the broker, the first within 20 s', async () => {
 		const { seen, waitsMs } = await feedInto(12, () => 201);
 		expect(waitsMs[0]).toBeLessThan(20_000);
-		const keyOf = { TB: 'Bearer kt', CP: 'Bearer kc', ND: 'Bearer kn' } as Record<string, string>;
-		for (const { key, body } of seen) {
-			expect(key).toBe(keyOf[String(body.packetId).slice(0, 2)]);
-			alertPacketSchema.parse(body);
-		}
+		const keyOf: Record<string, string> = { tambour: 'Bearer kt', needle: 'Bearer kn' };
+		const streams = seen.map(({ path, key, body }) => {
+			if (path === '/broker/api/events') {
+				expect(key).toBe('');
+				expect(body).toMatch(
+					/<voe:VOEvent [^>]* ivorn="ivo:\/\/carapace\.example\/alerts#CP-[\d-]+"/
+				);
+				return 'carapace';
+			}
+			expect(path).toBe('/api/v1/alerts');
+			const { packetId } = alertPacketSchema.parse(JSON.parse(body));
+			const [, stream] = /^ivo:\/\/(\w+)\.example\//.exec(packetId)!;
+			expect(key).toBe(keyOf[stream!]);
+			return stream;
+		});
+		expect(new Set(streams)).toEqual(new Set(['tambour', 'carapace', 'needle']));
 	});
 
 	it('backs off while the server fails and then sends the same packet', async () => {
 		const { seen, lines, waitsMs } = await feedInto(4, (call) => (call < 4 ? 503 : 201));
-		expect(new Set(seen.slice(0, 4).map(({ body }) => body.packetId)).size).toBe(1);
+		expect(new Set(seen.slice(0, 4).map(({ body }) => body)).size).toBe(1);
 		expect(waitsMs.filter((ms) => ms > 0).slice(1, 4)).toEqual([2000, 4000, 8000]);
 		expect(lines[3]).toContain('taken');
 	});

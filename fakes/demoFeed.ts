@@ -2,12 +2,15 @@ import { readFileSync } from 'node:fs';
 import { setTimeout as delay } from 'node:timers/promises';
 import { formatPosition } from './demoFeedLog';
 import { drawStory, planStory, type DemoStream, type PlannedPacket } from './demoEvents';
+import { demoVoEvent } from './demoVoEvent';
 import { between, seededDraw, type Draw } from './demoSky';
 import { isMain } from './runAsProcess';
 
 export type FeedOptions = {
 	/** Where the application answers. */
 	origin: string;
+	/** Where the VOEvent broker takes what it is to send. */
+	brokerUrl: string;
 	/** API key of each stream. */
 	keys: Record<DemoStream, string>;
 	draw: Draw;
@@ -19,6 +22,9 @@ export type FeedOptions = {
 	now?: () => number;
 };
 
+/** The stream whose packets go out as VOEvents, through the broker. */
+const VOEVENT_STREAM: DemoStream = 'carapace';
+
 const FIRST_AFTER_MS = 5_000;
 const QUIET_MINUTES = { low: 6, high: 10 };
 const FIRST_RETRY_MS = 2_000;
@@ -26,7 +32,7 @@ const LONGEST_RETRY_MS = 60_000;
 const REQUEST_TIMEOUT_MS = 20_000;
 
 /**
- * Posts packets of the invented streams to the public API until aborted: a burst that is narrowed
+ * Posts packets of the invented streams to the public API, and those of one to the VOEvent broker, until aborted: a burst that is narrowed
  * from degrees to arcseconds within 90 s, then another story every 6 to 10 minutes.
  */
 export async function runFeed(options: FeedOptions): Promise<void> {
@@ -72,26 +78,59 @@ async function deliver(
 async function post(
 	stream: DemoStream,
 	packet: PlannedPacket['packet'],
-	{ origin, keys, signal }: FeedOptions
+	options: FeedOptions
 ): Promise<{ final: boolean; text: string }> {
+	const { signal } = options;
+	const viaBroker = stream === VOEVENT_STREAM;
+	const { address, ...request } = viaBroker
+		? requestToBroker(packet, options)
+		: requestToApplication(stream, packet, options);
 	try {
-		const response = await fetch(`${origin}/api/v1/alerts`, {
+		const response = await fetch(address, {
 			method: 'POST',
-			headers: { 'Content-Type': 'application/json', Authorization: `Bearer ${keys[stream]}` },
-			body: JSON.stringify(packet),
+			...request,
 			signal: AbortSignal.any([signal, AbortSignal.timeout(REQUEST_TIMEOUT_MS)])
 		});
 		const body = await response.text();
 		if (response.ok) {
-			return { final: true, text: response.status === 200 ? 'known already' : 'taken' };
+			const taken = response.status === 200 ? 'known already' : 'taken';
+			return { final: true, text: viaBroker ? 'handed to the broker' : taken };
 		}
 		const refused = response.status < 500 && response.status !== 429;
 		const reason = refused ? `: ${body.slice(0, 300)}` : '';
 		return { final: refused, text: `answered ${response.status}${reason}` };
 	} catch (error) {
 		if (signal.aborted) throw error;
-		return { final: false, text: 'the application does not answer' };
+		return {
+			final: false,
+			text: `the ${viaBroker ? 'broker' : 'application'} does not answer`
+		};
 	}
+}
+
+type Request = { address: string; headers: Record<string, string>; body: string };
+
+function requestToApplication(
+	stream: DemoStream,
+	packet: PlannedPacket['packet'],
+	{ origin, keys }: FeedOptions
+): Request {
+	return {
+		address: `${origin}/api/v1/alerts`,
+		headers: { 'Content-Type': 'application/json', Authorization: `Bearer ${keys[stream]}` },
+		body: JSON.stringify(packet)
+	};
+}
+
+function requestToBroker(
+	packet: PlannedPacket['packet'],
+	{ brokerUrl, now = Date.now }: FeedOptions
+): Request {
+	return {
+		address: `${brokerUrl}/api/events`,
+		headers: { 'Content-Type': 'application/xml' },
+		body: demoVoEvent(packet, new Date(now()))
+	};
 }
 
 async function abortableDelay(ms: number, signal: AbortSignal): Promise<void> {
@@ -101,7 +140,10 @@ async function abortableDelay(ms: number, signal: AbortSignal): Promise<void> {
 if (isMain(import.meta.url)) {
 	const origin = process.env.ORIGIN;
 	const keysFile = process.env.DUSKLINE_DEMO_KEYS_FILE;
-	if (!origin || !keysFile) throw new Error('ORIGIN and DUSKLINE_DEMO_KEYS_FILE must be set');
+	const brokerUrl = process.env.DUSKLINE_BROKER_URL;
+	if (!origin || !keysFile || !brokerUrl) {
+		throw new Error('ORIGIN, DUSKLINE_BROKER_URL and DUSKLINE_DEMO_KEYS_FILE must be set');
+	}
 	const { streams } = JSON.parse(readFileSync(keysFile, 'utf8')) as {
 		streams: Record<DemoStream, string>;
 	};
@@ -111,6 +153,7 @@ if (isMain(import.meta.url)) {
 	}
 	await runFeed({
 		origin,
+		brokerUrl,
 		keys: streams,
 		draw: seededDraw(Number(process.env.DUSKLINE_FEED_SEED ?? Date.now())),
 		log: (line) => console.log(`${new Date().toISOString().slice(11, 19)} UTC  ${line}`),

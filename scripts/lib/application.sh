@@ -40,6 +40,10 @@ export_environment() {
 	DUSKLINE_PUSH_PORT=$PUSH_PORT
 	DUSKLINE_PUSH_PAGE_PORT=$PUSH_PAGE_PORT
 	DUSKLINE_PUSH_STATE=$LOCAL/push
+	DUSKLINE_BROKER_PORT=$BROKER_PORT
+	DUSKLINE_BROKER_PAGE_PORT=$BROKER_PAGE_PORT
+	DUSKLINE_BROKER_URL=http://127.0.0.1:$BROKER_PAGE_PORT
+	DUSKLINE_DEMO_BROKER=127.0.0.1:$BROKER_PORT
 	DUSKLINE_STORAGE_PORT=$STORAGE_PORT
 	DUSKLINE_STORAGE_STATE=$LOCAL/storage
 	STORAGE_URL=http://127.0.0.1:$STORAGE_PORT
@@ -57,10 +61,13 @@ require_free_ports() {
 	require_free_port "$SMTP_PORT" 'the mailbox' DUSKLINE_SMTP_PORT
 	require_free_port "$PUSH_PORT" 'the push service' DUSKLINE_PUSH_PORT
 	require_free_port "$PUSH_PAGE_PORT" "the push service's page" DUSKLINE_PUSH_PAGE_PORT
+	require_free_port "$BROKER_PORT" 'the VOEvent broker' DUSKLINE_BROKER_PORT
+	require_free_port "$BROKER_PAGE_PORT" "the VOEvent broker's page" DUSKLINE_BROKER_PAGE_PORT
 	require_free_port "$STORAGE_PORT" 'the object storage' DUSKLINE_STORAGE_PORT
 }
 
-# Both leave a mark beside the data they belong to, so that a later start need not ask again.
+# Both leave a mark beside the data they belong to, so that a later start need not ask again; the seed's
+# holds the broker's address, which another port changes.
 migrate_and_seed() {
 	local log=$LOG_DIR/database.log migrations
 	migrations=$(find drizzle -type f -print0 | LC_ALL=C sort -z | xargs -0 sha256sum | sha256sum)
@@ -72,16 +79,18 @@ migrate_and_seed() {
 		}
 		printf '%s' "$migrations" >"$PG_HOME/migrated"
 	fi
-	if [[ ! -f $PG_HOME/seeded || ! -s $DUSKLINE_DEMO_KEYS_FILE ]]; then
+	if [[ $(cat "$PG_HOME/seeded" 2>/dev/null) != "$DUSKLINE_DEMO_BROKER" || ! -s $DUSKLINE_DEMO_KEYS_FILE ]]; then
 		run_step seed - node --import tsx src/lib/server/demo/seed.ts ||
 			die "The demo data could not be made. '$SELF reset' starts with an empty database."
-		touch "$PG_HOME/seeded"
+		printf '%s' "$DUSKLINE_DEMO_BROKER" >"$PG_HOME/seeded"
 	fi
 }
 
 start_fakes() {
 	: >"$LOG_DIR/mailbox.log"
 	: >"$LOG_DIR/push.log"
+	: >"$LOG_DIR/broker.log"
+	spawn broker "$LOG_DIR/broker.log" node --import tsx fakes/voeventBroker.ts
 	: >"$LOG_DIR/storage.log"
 	spawn storage "$LOG_DIR/storage.log" node --import tsx fakes/objectStore.ts
 	spawn push "$LOG_DIR/push.log" node --import tsx fakes/pushService.ts
@@ -91,6 +100,7 @@ start_fakes() {
 await_fakes() {
 	wait_until_answers mailbox "$MAILBOX_PORT" / 30 "$LOG_DIR/mailbox.log"
 	wait_until_answers push "$PUSH_PAGE_PORT" / 30 "$LOG_DIR/push.log"
+	wait_until_answers broker "$BROKER_PAGE_PORT" / 30 "$LOG_DIR/broker.log"
 	wait_until_answers storage "$STORAGE_PORT" / 30 "$LOG_DIR/storage.log"
 }
 
@@ -169,6 +179,7 @@ print_welcome() {
   Sign in            $ORIGIN/auth/demo   (one click for each seeded person)
   Mailbox            $DUSKLINE_MAILBOX_URL   (sign-in links and circulars arrive here)
   Push messages      http://127.0.0.1:$PUSH_PAGE_PORT
+  VOEvent broker     http://127.0.0.1:$BROKER_PAGE_PORT
   Logs               .local/log/
   Stop               Ctrl-C, or '$SELF down'
 

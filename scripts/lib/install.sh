@@ -74,6 +74,18 @@ ensure_chromium() {
 	}
 }
 
+# The tests of VOEvents use it. They say so and go on where it can't be had.
+ensure_xmllint() {
+	command -v xmllint >/dev/null && return
+	if ! command -v apt-get >/dev/null || { ((EUID != 0)) && ! sudo -n true 2>/dev/null; }; then
+		say 'xmllint is missing (Debian package libxml2-utils): VOEvents are not checked against their schema.'
+		return
+	fi
+	say 'Installing xmllint from Debian for the tests of VOEvents'
+	apt_install libxml2-utils ||
+		say "xmllint could not be installed; see $LOG_DIR/apt.log. VOEvents are not checked against their schema."
+}
+
 # as_root COMMAND…: directly, or by sudo. Not in a session of its own: sudo may ask for the password.
 as_root() {
 	if ((EUID == 0)); then "$@"; else sudo "$@"; fi

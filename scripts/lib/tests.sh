@@ -24,6 +24,7 @@ run_tests() {
 	rm -f "$RESULTS"/*
 	ensure_postgres
 	ensure_chromium
+	ensure_xmllint
 	ensure_npm_packages
 
 	local vitest=node_modules/vitest/vitest.mjs

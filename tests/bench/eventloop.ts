@@ -2,6 +2,7 @@ import { setTimeout as delay } from 'node:timers/promises';
 import type { Board } from '../../src/lib/domain/board';
 import { startStack } from '../e2e/support/stack';
 import type { BenchRow } from './run';
+import { signIn } from './signIn';
 
 const RUN_MS = 20_000;
 /** A process that has just started compiles its code; these answers are not counted. */
@@ -40,19 +41,6 @@ export default async function eventloop(): Promise<BenchRow[]> {
 	} finally {
 		await stack.stop();
 	}
-}
-
-/** Signs in by the demo's page as its first person, a duty scientist. */
-async function signIn(origin: string): Promise<string> {
-	const page = await (await fetch(`${origin}/auth/demo`)).text();
-	const person = /name="person" value="([0-9a-f-]{36})"/.exec(page)?.[1] ?? '';
-	const answer = await fetch(`${origin}/auth/demo`, {
-		method: 'POST',
-		headers: { origin, 'content-type': 'application/x-www-form-urlencoded' },
-		body: new URLSearchParams({ person }),
-		redirect: 'manual'
-	});
-	return (answer.headers.get('set-cookie') ?? '').split(';')[0] ?? '';
 }
 
 /** Sends a higher serial of one wide circle every second, so that a new outlook is always due. */

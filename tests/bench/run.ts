@@ -7,7 +7,8 @@ export type BenchRow = [name: string, value: number, unit: string];
 /** Modules of each suite; each exports an async function by default that returns its rows. */
 const SUITES: Record<string, string[]> = {
 	sky: ['skyRegions.ts', 'skyOutlook.ts'],
-	eventloop: ['eventloop.ts']
+	eventloop: ['eventloop.ts'],
+	ingest: ['ingest.ts', 'mapUpload.ts']
 };
 
 const wanted = process.argv.slice(2);

@@ -7,7 +7,7 @@ import { join } from 'node:path';
 import { setTimeout as delay } from 'node:timers/promises';
 import pg from 'pg';
 
-/** A PostgreSQL cluster of one test run: its own port, data in a temporary folder, no durability. */
+/** A PostgreSQL cluster of one test run: its own port, data in a temporary folder. */
 export type Cluster = {
 	port: number;
 	/** Address of a database in the cluster, as its superuser. */
@@ -15,6 +15,11 @@ export type Cluster = {
 	stop: () => Promise<void>;
 };
 
+// prettier-ignore
+const NOT_DURABLE = [
+	'-c', 'fsync=off', '-c', 'synchronous_commit=off', '-c', 'full_page_writes=off', '-c', 'autovacuum=off',
+	'-c', 'shared_buffers=64MB', '-c', 'wal_level=minimal', '-c', 'max_wal_senders=0'
+];
 const START_TIMEOUT_MS = 30_000;
 const STOP_TIMEOUT_MS = 10_000;
 
@@ -22,7 +27,8 @@ const STOP_TIMEOUT_MS = 10_000;
  * Starts a throw-away cluster on a free loopback port; it ends with `stop()`, with a signal to this
  * process, and (by the parent-death signal) even when this process is killed outright.
  */
-export async function startCluster(): Promise<Cluster> {
+/** Starts one without durability, which tests do not need; `durable` is as a real one runs, for measuring. */
+export async function startCluster({ durable = false } = {}): Promise<Cluster> {
 	const bin = binaryDirectory();
 	const owner = unprivilegedOwner();
 	const directory = mkdtempSync(join(tmpdir(), 'duskline-db-'));
@@ -58,10 +64,8 @@ export async function startCluster(): Promise<Cluster> {
 		// prettier-ignore
 		const [server, serverArgs] = asOwner(join(bin, 'postgres'), [
 			'-D', dataDirectory, '-p', String(port), '-c', 'listen_addresses=127.0.0.1',
-			'-c', 'unix_socket_directories=', '-c', 'fsync=off', '-c', 'synchronous_commit=off',
-			'-c', 'full_page_writes=off', '-c', 'autovacuum=off', '-c', 'max_connections=200',
-			'-c', 'shared_buffers=64MB', '-c', 'wal_level=minimal', '-c', 'max_wal_senders=0',
-			'-c', 'timezone=UTC'
+			'-c', 'unix_socket_directories=', '-c', 'max_connections=200', '-c', 'timezone=UTC',
+			...(durable ? [] : NOT_DURABLE)
 		]);
 		// Its own session: a Ctrl-C in the terminal reaches the test runner first, which then stops it.
 		const child = spawn(server, serverArgs, {

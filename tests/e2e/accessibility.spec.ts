@@ -57,6 +57,7 @@ test.describe('axe finds nothing', () => {
 		await expectAccessible(page, `/now?t=${designation}`, EVERY_LOOK);
 		await expectAccessible(page, '/duty', EVERY_LOOK);
 		await expectAccessible(page, '/now', TWO_LOOKS);
+		await expectAccessible(page, '/transients/new', TWO_LOOKS);
 	});
 
 	test('on a transient, the list and the slots', async ({ page }) => {
@@ -84,7 +85,14 @@ test.describe('axe finds nothing', () => {
 	test('on the network pages', async ({ page }) => {
 		await signInAs(page, 'steward');
 		await expectAccessible(page, '/network', EVERY_LOOK);
-		for (const path of ['telescopes/ALM', 'streams', 'streams/tambour', 'rota', 'people']) {
+		for (const path of [
+			'telescopes/ALM',
+			'streams',
+			'streams/tambour',
+			'quarantine',
+			'rota',
+			'people'
+		]) {
 			await expectAccessible(page, `/network/${path}`, TWO_LOOKS);
 		}
 	});
@@ -100,5 +108,10 @@ test.describe('axe finds nothing', () => {
 		await page.goto('/auth/sign-in');
 		await expectAccessible(page, '/auth/sign-in', TWO_LOOKS);
 		await expectAccessible(page, '/auth/demo', TWO_LOOKS);
+	});
+
+	test('on the description of the API', async ({ page }) => {
+		await page.goto('/api');
+		await expectAccessible(page, '/api', EVERY_LOOK);
 	});
 });

@@ -76,46 +76,60 @@ export const instantSchema = z.iso
 		return year >= 1990 && year < 2100;
 	}, 'must lie between the years 1990 and 2100');
 
+/** It is stored where no NUL can be. */
+const remarks = z
+	.string()
+	.max(4000)
+	.refine((text) => !text.includes('\u0000'), 'must not contain the character NUL')
+	.default('');
+
+const CONTENT_FIELDS = {
+	packetId,
+	serial: z.number().int().min(1).max(1_000_000),
+	role: z.enum(ALERT_ROLES),
+	kind: z.enum(ALERT_KINDS),
+	t0: instantSchema,
+	shape: shapeSchema.optional(),
+	significance: finite(0, 1e6).optional(),
+	falseAlarmPerYear: finite(0, 1e9).optional(),
+	remarks
+};
+
+type KindAndShape = {
+	kind: (typeof ALERT_KINDS)[number];
+	serial: number;
+	shape?: unknown;
+	cites: { relation: string }[];
+};
+
+function checkKind(packet: KindAndShape, context: z.RefinementCtx): void {
+	const issue = (path: string, message: string) =>
+		context.addIssue({ code: 'custom', path: [path], message });
+	if (packet.kind !== 'retraction') {
+		if (!packet.shape) issue('shape', `is needed in a packet of kind ${packet.kind}`);
+		return;
+	}
+	if (packet.shape) issue('shape', 'must not be given in a retraction');
+	if (packet.serial === 1 && !packet.cites.some((cite) => cite.relation === 'retraction')) {
+		issue('cites', 'must name the packet that is retracted');
+	}
+}
+
 /** Body of `POST /api/v1/alerts`. */
 export const alertPacketSchema = z
-	.strictObject({
-		packetId,
-		serial: z.number().int().min(1).max(1_000_000),
-		role: z.enum(ALERT_ROLES),
-		kind: z.enum(ALERT_KINDS),
-		cites: z.array(citationSchema).max(20).default([]),
-		t0: instantSchema,
-		shape: shapeSchema.optional(),
-		significance: finite(0, 1e6).optional(),
-		falseAlarmPerYear: finite(0, 1e9).optional(),
-		remarks: z.string().max(4000).default('')
-	})
-	.superRefine((packet, context) => {
-		if (packet.kind !== 'retraction' && !packet.shape) {
-			context.addIssue({
-				code: 'custom',
-				path: ['shape'],
-				message: `is needed in a packet of kind ${packet.kind}`
-			});
-		}
-		if (packet.kind === 'retraction' && packet.shape) {
-			context.addIssue({
-				code: 'custom',
-				path: ['shape'],
-				message: 'must not be given in a retraction'
-			});
-		}
-		if (
-			packet.kind === 'retraction' &&
-			packet.serial === 1 &&
-			!packet.cites.some((cite) => cite.relation === 'retraction')
-		) {
-			context.addIssue({
-				code: 'custom',
-				path: ['cites'],
-				message: 'must name the packet that is retracted'
-			});
-		}
-	});
+	.strictObject({ ...CONTENT_FIELDS, cites: z.array(citationSchema).max(20).default([]) })
+	.superRefine(checkKind);
 
 export type AlertPacket = z.output<typeof alertPacketSchema>;
+
+/** What an alert says, whatever format it was written in: a citation need not know the stream. */
+export const alertContentSchema = z
+	.strictObject({
+		...CONTENT_FIELDS,
+		cites: z
+			.array(citationSchema.extend({ stream: citationSchema.shape.stream.nullable() }))
+			.max(20)
+	})
+	.superRefine(checkKind);
+
+export type AlertContent = z.output<typeof alertContentSchema>;

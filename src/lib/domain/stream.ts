@@ -5,6 +5,47 @@ import { STREAM_CLASSES, type StreamClass } from './vocabulary';
 const text = (most: number, what: string) =>
 	z.string().trim().min(1, `${what} is needed.`).max(most, `At most ${most} characters.`);
 
+/** The numbers that a VOEvent has no place of its own for, with their names on screen. */
+export const MAPPED_PARAMS = {
+	significance: { label: 'Significance', unit: '' },
+	falseAlarmPerYear: { label: 'False alarms a year', unit: '' },
+	systematicDeg: { label: 'Systematic error', unit: 'deg' }
+} as const;
+export type MappedParam = keyof typeof MAPPED_PARAMS;
+
+/** A Param by name, in a Group or Table or outside (an empty group); its value is multiplied by `factor`. */
+export type ParamSource = { group: string; name: string; factor: number };
+export type ParamMap = Partial<Record<MappedParam, ParamSource>>;
+
+const paramName = z.string().trim().max(100, 'At most 100 characters.').default('');
+
+/** A row of the form; without a name it maps nothing. */
+const paramRow = z
+	.object({
+		group: paramName,
+		name: paramName,
+		factor: z.preprocess(
+			(typed) => (typed === '' || typed === undefined ? 1 : typed),
+			formNumber(1e-12, 1e12)
+		)
+	})
+	.refine((row) => row.name !== '' || row.group === '', {
+		path: ['name'],
+		error: 'The name of the Param is needed.'
+	});
+
+const paramMap = z
+	.object({
+		significance: paramRow.optional(),
+		falseAlarmPerYear: paramRow.optional(),
+		systematicDeg: paramRow.optional()
+	})
+	.transform((rows): ParamMap =>
+		Object.fromEntries(
+			Object.entries(rows).filter(([, row]) => row !== undefined && row.name !== '')
+		)
+	);
+
 const STREAM_FIELDS = {
 	name: text(60, 'A name'),
 	streamClass: z.enum(STREAM_CLASSES, 'Choose a kind of instrument.'),
@@ -15,7 +56,8 @@ const STREAM_FIELDS = {
 	silentAfterMinutes: formNumber(1, 525_600, 'minutes').pipe(z.number().int('Whole minutes only.')),
 	fadeM1Mean: formNumber(5, 40, 'mag'),
 	fadeM1Spread: formNumber(0.1, 10, 'mag'),
-	fadeAlpha: formNumber(0, 5)
+	fadeAlpha: formNumber(0, 5),
+	paramMap: paramMap.optional()
 };
 
 /** A changed stream. Its code stays: packets cite by it. */

@@ -26,6 +26,12 @@ export type AlertRole = (typeof ALERT_ROLES)[number];
 export const ALERT_KINDS = ['report', 'update', 'retraction'] as const;
 export type AlertKind = (typeof ALERT_KINDS)[number];
 
+export const ALERT_KIND_LABELS: Record<AlertKind, string> = {
+	report: 'First report',
+	update: 'Update of an earlier packet',
+	retraction: 'Retraction of an earlier packet'
+};
+
 /** What became of a body as received; `refused` is the quarantine list, `noted` are packets that are no alerts. */
 export const PACKET_STATES = [
 	'received',
@@ -40,6 +46,13 @@ export type PacketState = (typeof PACKET_STATES)[number];
 /** The way a body came in. */
 export const PACKET_CHANNELS = ['api', 'file', 'form', 'socket'] as const;
 export type PacketChannel = (typeof PACKET_CHANNELS)[number];
+
+export const PACKET_CHANNEL_LABELS: Record<PacketChannel, string> = {
+	api: 'Posted with a key',
+	file: 'Handed in as a file',
+	form: 'Entered by hand',
+	socket: 'Live socket'
+};
 
 /** How an earlier packet is cited (VOEvent 2.0, EventIVORN@cite). */
 export const CITATION_RELATIONS = ['followup', 'supersedes', 'retraction'] as const;

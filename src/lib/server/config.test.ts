@@ -61,6 +61,18 @@ describe('parseConfig', () => {
 		expect(refusalOf({ ...GOOD, ...storage, STORAGE_URL: 's3://files' })).toMatch(/STORAGE_URL/);
 	});
 
+	it('reads the demo’s broker as host and port', () => {
+		const broker = (text?: string) =>
+			parseConfig({ ...GOOD, DUSKLINE_DEMO_BROKER: text }).demoBroker;
+		expect(broker('127.0.0.1:4185')).toEqual({ host: '127.0.0.1', port: 4185 });
+		expect(broker()).toBeNull();
+		for (const text of ['127.0.0.1', ':4185', '127.0.0.1:0', '127.0.0.1:65536', 'http://a:1']) {
+			expect(refusalOf({ ...GOOD, DUSKLINE_DEMO_BROKER: text }), text).toMatch(
+				/DUSKLINE_DEMO_BROKER must be host:port/
+			);
+		}
+	});
+
 	it('refuses half a set of push keys and a short secret', () => {
 		expect(refusalOf({ ...GOOD, VAPID_PUBLIC_KEY: 'key' })).toMatch(/go together/);
 		expect(refusalOf({ ...GOOD, AUTH_SECRET: 'short' })).toMatch(/AUTH_SECRET must be at least 32/);

@@ -16,6 +16,15 @@ const environmentSchema = z
 		DUSKLINE_ROLE: z.enum(['web', 'worker', 'all']).default('all'),
 		DUSKLINE_DEMO: onOff.default(false),
 		DUSKLINE_MAILBOX_URL: z.url().optional(),
+		DUSKLINE_DEMO_BROKER: z
+			.string()
+			.regex(/^[A-Za-z0-9.-]+:\d{1,5}$/, 'must be host:port')
+			.transform((text) => {
+				const [host, port] = text.split(':') as [string, string];
+				return { host, port: Number(port) };
+			})
+			.refine(({ port }) => port >= 1 && port <= 65_535, 'must be host:port')
+			.optional(),
 		DUSKLINE_COMPUTE_THREADS: z.coerce.number().int().min(1).max(16).default(1),
 		DATABASE_POOL_MAX: z.coerce.number().int().min(2).max(100).default(12),
 		VAPID_PUBLIC_KEY: z.string().min(1).optional(),
@@ -81,6 +90,8 @@ export type Config = {
 	demo: boolean;
 	/** Where the demo's mailbox can be read; shown on the sign-in page. */
 	mailboxUrl: string | null;
+	/** The VOEvent broker that the demo's seed subscribes one stream to. */
+	demoBroker: { host: string; port: number } | null;
 	computeThreads: number;
 	vapid: { publicKey: string; privateKey: string; subject: string } | null;
 	/** Object storage by the S3 API, for files that come with packets; null: such packets are refused. */
@@ -124,6 +135,7 @@ export function parseConfig(environment: Record<string, string | undefined>): Co
 		role: env.DUSKLINE_ROLE,
 		demo: env.DUSKLINE_DEMO,
 		mailboxUrl: env.DUSKLINE_MAILBOX_URL ?? null,
+		demoBroker: env.DUSKLINE_DEMO_BROKER ?? null,
 		computeThreads: env.DUSKLINE_COMPUTE_THREADS,
 		vapid:
 			env.VAPID_PUBLIC_KEY && env.VAPID_PRIVATE_KEY && env.VAPID_SUBJECT

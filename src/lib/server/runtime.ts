@@ -11,12 +11,13 @@ import { logger } from './logger';
 import { closeMailers } from './notify/mailer';
 import { createComputePool } from './outlook/computePool';
 import { createObjectStore } from './storage/objectStore';
+import { startBrokerSubscriber } from './sockets/brokerSubscriber';
 
 export type Runtime = { app: App; stop: () => Promise<void> };
 
 /**
- * Starts what a process needs: database, queue and compute threads; jobs run here unless the role is
- * `web`. Migrations are applied first, one process at a time.
+ * Starts what a process needs: database, queue and compute threads; jobs run and sockets are held
+ * here unless the role is `web`. Migrations are applied first, one process at a time.
  */
 export async function startRuntime(): Promise<Runtime> {
 	const settings = config();
@@ -39,10 +40,12 @@ export async function startRuntime(): Promise<Runtime> {
 	await app.queue.enqueue(app.database, fillAlertSkyJob, {});
 	const stopFollowing = settings.role === 'worker' ? async () => {} : await followRevisions(app);
 	const stopWorkers = settings.role === 'web' ? async () => {} : await runWorkers(app, boss);
+	const stopSockets = settings.role === 'web' ? async () => {} : startBrokerSubscriber(app);
 	logger.info({ role: settings.role, origin: settings.origin }, 'duskline started');
 	return {
 		app,
 		stop: async () => {
+			await stopSockets();
 			await stopWorkers();
 			await stopFollowing();
 			await stopBoss(boss);

@@ -30,6 +30,13 @@ export function formatPosition(
  * ascension are hours; a single one is degrees unless marked h. Null when it can't be read or is out of range.
  */
 export function parsePosition(text: string): Equatorial | null {
+	const read = parseUnfolded(text);
+	if (!read || read.raDeg < 0 || Object.is(read.raDeg, -0) || read.raDeg > 360) return null;
+	return { raDeg: normaliseDeg(read.raDeg), decDeg: read.decDeg };
+}
+
+/** As `parsePosition`, but right ascension is left as written, −3600 to 3600 degrees: who folds it can say so. */
+export function parseUnfolded(text: string): Equatorial | null {
 	const plain = text
 		.trim()
 		.toLowerCase()
@@ -41,11 +48,10 @@ export function parsePosition(text: string): Equatorial | null {
 	if (!halves) return null;
 	const ra = readAngle(halves.ra);
 	const dec = readAngle(halves.dec);
-	if (!ra || !dec || ra.negative || dec.hours) return null;
-	const raDeg = ra.hours || ra.fields > 1 ? ra.value * 15 : ra.value;
-	const decDeg = dec.negative ? -dec.value : dec.value;
-	if (raDeg > 360 || Math.abs(decDeg) > 90) return null;
-	return { raDeg: normaliseDeg(raDeg), decDeg };
+	if (!ra || !dec || dec.hours) return null;
+	const size = ra.hours || ra.fields > 1 ? ra.value * 15 : ra.value;
+	if (size > 3600 || dec.value > 90) return null;
+	return { raDeg: ra.negative ? -size : size, decDeg: dec.negative ? -dec.value : dec.value };
 }
 
 /** Declination starts at its sign, or else halfway through the numbers. */

@@ -4,6 +4,8 @@ export type StackAddresses = {
 	mailboxUrl: string;
 	/** The push service's JSON API. */
 	pushUrl: string;
+	/** The VOEvent broker's JSON API. */
+	brokerUrl: string;
 	databaseUrl: string;
 	streamKeys: Record<'tambour' | 'carapace' | 'needle', string>;
 };

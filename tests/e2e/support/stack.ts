@@ -15,6 +15,7 @@ import webPush from 'web-push';
 import { startMailbox } from '../../../fakes/mailbox';
 import { startObjectStore } from '../../../fakes/objectStore';
 import { startPushService } from '../../../fakes/pushService';
+import { startVoeventBroker } from '../../../fakes/voeventBroker';
 import { freePort, startCluster } from '../../database/cluster';
 import { administer } from '../../database/templateDatabase';
 import type { StackAddresses } from './addresses';
@@ -34,7 +35,7 @@ const LOG_FILE = 'test-results/application.log';
  * Starts what the browser tests run against: a database with the demo's seed, the fakes and the built
  * application, all on free loopback ports and ended by `stop()`.
  */
-export async function startStack(): Promise<Stack> {
+export async function startStack(options: { durable?: boolean } = {}): Promise<Stack> {
 	if (!existsSync('build/index.js') || !existsSync('build-workers/compute.js')) {
 		throw new Error('There is no build: run `npm run build` first');
 	}
@@ -47,7 +48,7 @@ export async function startStack(): Promise<Stack> {
 		for (const step of stops.reverse()) await step();
 	};
 	try {
-		const cluster = await startCluster();
+		const cluster = await startCluster(options);
 		stops.push(cluster.stop);
 		await administer(cluster.urlOf('postgres'), 'CREATE DATABASE duskline');
 		const mailbox = await startMailbox({ smtp: 0, http: 0 });
@@ -65,6 +66,8 @@ export async function startStack(): Promise<Stack> {
 			...keys
 		});
 		stops.push(storage.close);
+		const broker = await startVoeventBroker({ vtpPort: 0, httpPort: 0 });
+		stops.push(broker.close);
 
 		const port = await freePort();
 		const keysFile = join(directory, 'demo-keys.json');
@@ -75,7 +78,8 @@ export async function startStack(): Promise<Stack> {
 			smtpUrl: mailbox.smtpUrl,
 			mailboxUrl: mailbox.url,
 			certificatePath: push.certificatePath,
-			storage: { url: storage.url, ...keys }
+			storage: { url: storage.url, ...keys },
+			brokerPort: broker.port
 		});
 		for (const script of ['src/lib/server/db/migrate.ts', 'src/lib/server/demo/seed.ts']) {
 			execFileSync('node', ['--import', 'tsx', script], { env: environment, stdio: 'inherit' });
@@ -91,6 +95,7 @@ export async function startStack(): Promise<Stack> {
 				origin: `http://127.0.0.1:${port}`,
 				mailboxUrl: mailbox.url,
 				pushUrl: push.url,
+				brokerUrl: broker.url,
 				databaseUrl: cluster.urlOf('duskline'),
 				streamKeys: streams
 			},
@@ -111,6 +116,7 @@ function environmentOf(parts: {
 	mailboxUrl: string;
 	certificatePath: string;
 	storage: { url: string; bucket: string; accessKey: string; secretKey: string };
+	brokerPort: number;
 }): NodeJS.ProcessEnv {
 	const vapid = webPush.generateVAPIDKeys();
 	return {
@@ -134,7 +140,8 @@ function environmentOf(parts: {
 		NODE_EXTRA_CA_CERTS: parts.certificatePath,
 		DUSKLINE_DEMO: 'on',
 		DUSKLINE_DEMO_KEYS_FILE: parts.keysFile,
-		DUSKLINE_MAILBOX_URL: parts.mailboxUrl
+		DUSKLINE_MAILBOX_URL: parts.mailboxUrl,
+		DUSKLINE_DEMO_BROKER: `127.0.0.1:${parts.brokerPort}`
 	};
 }
 

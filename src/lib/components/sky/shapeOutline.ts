@@ -1,6 +1,6 @@
 import type { Equatorial } from '../../sky/angle';
 import type { Shape } from '../../sky/regions/shape';
-import { deproject, offset } from '../../sky/vector';
+import { deproject, offset, toEquatorial, toVector } from '../../sky/vector';
 
 const CORNERS = 72;
 const turn = (i: number) => (i * 360) / CORNERS;
@@ -42,4 +42,16 @@ export function shapeOutline(shape: Shape): Equatorial[][] {
 		case 'map':
 			return [];
 	}
+}
+
+/** The middle of points on the sky, for a chart's centre; the origin where they are all around. */
+export function middleOf(points: readonly Equatorial[]): Equatorial {
+	const sum = { x: 0, y: 0, z: 0 };
+	for (const point of points) {
+		const { x, y, z } = toVector(point);
+		sum.x += x;
+		sum.y += y;
+		sum.z += z;
+	}
+	return Math.hypot(sum.x, sum.y, sum.z) < 1e-9 ? { raDeg: 0, decDeg: 0 } : toEquatorial(sum);
 }

@@ -240,6 +240,29 @@ describe('updates and retractions', () => {
 		]);
 	});
 
+	it('a retraction by another stream is heard, and the alert it names stands', async () => {
+		const first = await world.receive(gamma, circlePacket({ packetId: packetId('A'), t0: t0() }));
+		const { receipt } = await world.receive(xray, {
+			packetId: packetId('R'),
+			serial: 1,
+			role: 'observation',
+			kind: 'retraction',
+			t0: t0(),
+			cites: [{ stream: 'tambour', packetId: packetId('A'), relation: 'retraction' }]
+		});
+		expect(receipt.designation).toBe(first.receipt.designation);
+		const [row] = await world.app.database
+			.select()
+			.from(transient)
+			.where(eq(transient.designation, receipt.designation));
+		expect(row!.state).toBe('open');
+		const lines = await world.app.database
+			.select({ summary: journal.summary })
+			.from(journal)
+			.where(eq(journal.transientId, row!.id));
+		expect(lines.map(({ summary }) => summary).join('\n')).toContain('which stands');
+	});
+
 	it('a retraction that overtakes its report still holds when the report arrives', async () => {
 		await world.receive(gamma, {
 			packetId: packetId('R'),

@@ -2,7 +2,7 @@ import { isDeepStrictEqual } from 'node:util';
 import { and, eq, or, sql } from 'drizzle-orm';
 import type { App } from '../app';
 import type { Transaction } from '../db/database';
-import { alert, stream } from '../db/schema/alerts';
+import { alert } from '../db/schema/alerts';
 import { journal, transient } from '../db/schema/transients';
 import { writeTransaction } from '../db/writeTransaction';
 import { DomainError } from '../domainError';
@@ -102,15 +102,11 @@ export async function receiveAlert(
 			placement.withdrawn.map((item) => item.id)
 		);
 		await settlePacket(tx, kept.id, { state: 'taken', at: app.now() });
-		await tx
-			.update(stream)
-			.set({ lastHeardAt: receivedAt, silenceNotedAt: null })
-			.where(eq(stream.id, source.id));
 		await writeJournal(tx, {
 			transientId: home.id,
 			kind: content.kind === 'retraction' ? 'alertRetracted' : 'alertReceived',
 			at: app.now(),
-			actorId: null,
+			actorId: kept.personId,
 			summary: [arrivalSummary(source.name, content, placement), ...notes].join('; '),
 			detail: {
 				alertId: row!.id,

@@ -33,6 +33,13 @@ export function arrivalSummary(
 	packet: AlertContent,
 	placement: Placement
 ): string {
+	const sentence = placed(streamName, packet, placement);
+	return placement.overreaches
+		? `${sentence}; it asks to replace or retract an alert of another stream, which stands`
+		: sentence;
+}
+
+function placed(streamName: string, packet: AlertContent, placement: Placement): string {
 	const what = `${streamName} ${packet.packetId}, serial ${packet.serial}`;
 	if (packet.kind === 'retraction') return `${what}: retraction`;
 	const odds =

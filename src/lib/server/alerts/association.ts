@@ -8,6 +8,7 @@ import {
 } from '../../sky/regions/agreement';
 import type { Shape } from '../../sky/regions/shape';
 import type { Transaction } from '../db/database';
+import type { Citation } from '../db/schema/alerts';
 import {
 	citedAlerts,
 	citingAlerts,
@@ -28,6 +29,8 @@ export type Placement = {
 	withdrawn: AlertRow[];
 	/** False when something that arrived earlier already supersedes or retracts it. */
 	live: boolean;
+	/** It asks to replace or retract another stream's alert, which only its own stream can: that one stands. */
+	overreaches: boolean;
 };
 
 export type Arrival = {
@@ -42,24 +45,31 @@ export type Arrival = {
 	shape: Shape | null;
 };
 
+type Citing = { alert: AlertRow; relation: Citation['relation'] };
+
 /**
  * Decides which transient an alert belongs to: the one of its earlier serial, else of what it cites,
  * else of what already cites it, else the one it agrees with best (science: Budavári & Szalay 2008).
  */
 export async function placeAlert(tx: Transaction, arrival: Arrival): Promise<Placement> {
-	const { packet, serials } = arrival;
-	const cited = await citedAlerts(tx, packet.cites);
-	const citing = await citingAlerts(tx, arrival.streamCode, packet.packetId);
+	const { packet, streamId } = arrival;
+	// A test neither joins, replaces nor retracts what is real, nor the other way round.
+	const serials = arrival.serials.filter((row) => row.role === packet.role);
+	const cited = (await citedAlerts(tx, packet.cites)).filter(
+		({ alert }) => alert.role === packet.role
+	);
+	const citing = (await citingAlerts(tx, arrival.streamCode, packet.packetId)).filter(
+		({ alert }) => alert.role === packet.role
+	);
 
-	const overtaken =
-		serials.some((row) => row.serial > packet.serial) ||
-		citing.some(({ relation }) => relation !== 'followup');
+	const withdraws = ({ alert, relation }: Citing) =>
+		relation !== 'followup' && alert.streamId === streamId;
+	const overtaken = serials.some((row) => row.serial > packet.serial) || citing.some(withdraws);
 	const withdrawn = [
 		...serials.filter((row) => row.serial < packet.serial && row.live),
-		...cited
-			.filter(({ alert, relation }) => relation !== 'followup' && alert.live)
-			.map((c) => c.alert)
+		...cited.filter((item) => withdraws(item) && item.alert.live).map(({ alert }) => alert)
 	];
+	const overreaches = cited.some((item) => item.relation !== 'followup' && !withdraws(item));
 	const known = serials[0] ?? cited[0]?.alert ?? citing[0]?.alert;
 	const live = packet.kind !== 'retraction' && !overtaken;
 	if (known) {
@@ -69,19 +79,28 @@ export async function placeAlert(tx: Transaction, arrival: Arrival): Promise<Pla
 			membership: logOdds === null ? 'cited' : 'provisional',
 			logOdds,
 			withdrawn,
-			live
+			live,
+			overreaches
 		};
 	}
 	const best = arrival.shape ? await bestMatch(tx, arrival, arrival.shape) : null;
 	if (!best || best.logOdds < START_LOG_ODDS) {
-		return { transientId: null, membership: 'started', logOdds: null, withdrawn, live };
+		return {
+			transientId: null,
+			membership: 'started',
+			logOdds: null,
+			withdrawn,
+			live,
+			overreaches
+		};
 	}
 	return {
 		transientId: best.transientId,
 		membership: best.logOdds > JOIN_LOG_ODDS ? 'joined' : 'provisional',
 		logOdds: best.logOdds,
 		withdrawn,
-		live
+		live,
+		overreaches
 	};
 }
 

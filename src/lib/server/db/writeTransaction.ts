@@ -1,4 +1,4 @@
-import { eq, sql } from 'drizzle-orm';
+import { sql } from 'drizzle-orm';
 import type { App } from '../app';
 import { BOARD_CHANNEL, noteRevision } from './boardRevisions';
 import { databaseErrorOf, type Transaction } from './database';
@@ -46,20 +46,25 @@ export async function writeTransaction<T>(
 	}
 }
 
+/** One statement: everybody waits for the revision's row. */
 async function moveRevision(
 	tx: Transaction,
 	touched: Set<string>,
 	network: boolean
 ): Promise<number> {
-	const next = sql`${boardRevision.value} + 1`;
-	const [row] = await tx
-		.update(boardRevision)
-		.set(network ? { value: next, network: next } : { value: next })
-		.returning({ value: boardRevision.value });
-	const revision = row!.value;
-	for (const id of touched) {
-		await tx.update(transient).set({ revision }).where(eq(transient.id, id));
-	}
-	await tx.execute(sql`select pg_notify(${BOARD_CHANNEL}, ${String(revision)})`);
-	return revision;
+	const ids = sql.join(
+		[...touched].map((id) => sql`${id}::uuid`),
+		sql`, `
+	);
+	const touch =
+		touched.size > 0
+			? sql`, touched as (
+				update ${transient} set revision = (select value from moved) where id in (${ids}))`
+			: sql``;
+	const { rows } = await tx.execute<{ value: string }>(sql`
+		with moved as (
+			update ${boardRevision} set value = value + 1${network ? sql`, network = value + 1` : sql``}
+			returning value)${touch}
+		select value, pg_notify(${BOARD_CHANNEL}, value::text) from moved`);
+	return Number(rows[0]!.value);
 }

@@ -1,7 +1,8 @@
+import { and, eq, ne } from 'drizzle-orm';
 import type { StreamClass } from '../../domain/vocabulary';
 import type { FadeModel } from '../../sky/outlook/outlook';
 import type { Transaction } from '../db/database';
-import { stream, streamKey } from '../db/schema/alerts';
+import { stream, streamBroker, streamKey, type ParamMap } from '../db/schema/alerts';
 import { makeStreamKey } from '../streams/streamKeyService';
 
 export const DEMO_STREAM_CODES = ['tambour', 'carapace', 'needle'] as const;
@@ -65,6 +66,39 @@ export async function seedStreams(
 		.values(DEMO_STREAMS.map((one) => ({ ...one, fade: DEMO_FADE, createdAt })))
 		.returning({ id: stream.id, code: stream.code });
 	return new Map(rows.map(({ id, code }) => [code as DemoStreamCode, id]));
+}
+
+/** The stream whose packets come as VOEvents, and where they hold what VOEvent has no element for. */
+const VOEVENT_STREAM: DemoStreamCode = 'carapace';
+const VOEVENT_PARAMS: ParamMap = {
+	significance: { group: 'detection', name: 'significance', factor: 1 },
+	falseAlarmPerYear: { group: 'detection', name: 'false_alarm_rate', factor: 1 }
+};
+
+/** Subscribes the VOEvent stream to the demo's broker, in place of the port it had before. */
+export async function seedBroker(
+	tx: Transaction,
+	{ host, port }: { host: string; port: number }
+): Promise<void> {
+	const [owner] = await tx
+		.update(stream)
+		.set({ paramMap: VOEVENT_PARAMS })
+		.where(eq(stream.code, VOEVENT_STREAM))
+		.returning({ id: stream.id });
+	if (!owner) return;
+	await tx
+		.delete(streamBroker)
+		.where(
+			and(
+				eq(streamBroker.streamId, owner.id),
+				eq(streamBroker.host, host),
+				ne(streamBroker.port, port)
+			)
+		);
+	await tx
+		.insert(streamBroker)
+		.values({ streamId: owner.id, host, port, ivornPrefix: `ivo://${VOEVENT_STREAM}.example/` })
+		.onConflictDoNothing();
 }
 
 /** Makes one key for each demo stream and answers them in clear, for the feed's key file. */

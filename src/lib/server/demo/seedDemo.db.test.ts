@@ -64,6 +64,20 @@ test('a second run without the key file gives new keys and revokes the old ones'
 	expect(stream.code).toBe('tambour');
 });
 
+test('one stream is subscribed to the broker that is named, whatever port it had before', async () => {
+	const brokers = () => rows('select host, port, enabled, ivorn_prefix from stream_broker');
+	expect(await brokers()).toEqual([]);
+	for (const port of [4185, 4195, 4195]) {
+		const demoBroker = { host: '127.0.0.1', port };
+		await seedDemo({ ...world.app, config: { ...world.app.config, demoBroker } }, null);
+		expect(await brokers()).toEqual([
+			{ host: '127.0.0.1', port, enabled: true, ivorn_prefix: 'ivo://carapace.example/' }
+		]);
+	}
+	const [source] = await rows(`select param_map from stream where code = 'carapace'`);
+	expect(source).toMatchObject({ param_map: { significance: { name: 'significance' } } });
+});
+
 test('nothing lies in the future but watches, claims and closures', async () => {
 	const now = world.app.now().toISOString();
 	const [late] = await rows(

@@ -15,7 +15,13 @@ import { demoRandom } from './demoRandom';
 import { seedRota } from './demoRota';
 import { insertChapters } from './demoRows';
 import { planStory } from './demoStory';
-import { DEMO_KEY_LABEL, DEMO_STREAM_CODES, seedStreamKeys, seedStreams } from './demoStreams';
+import {
+	DEMO_KEY_LABEL,
+	DEMO_STREAM_CODES,
+	seedBroker,
+	seedStreamKeys,
+	seedStreams
+} from './demoStreams';
 import { seedClosures, seedTelescopes } from './demoTelescopes';
 
 export type SeedResult = {
@@ -61,6 +67,8 @@ export async function seedDemo(
 		change.touchNetwork();
 		return { made: true, ...(await seedAll(tx, now)) };
 	});
+	const { demoBroker } = app.config;
+	if (demoBroker) await writeTransaction(app, (tx) => seedBroker(tx, demoBroker));
 	await beginHappeningNow(app, +now);
 	if (seeded.made) await requestAllOutlooks(app);
 	return seeded;

@@ -3,7 +3,9 @@ import type { z } from 'zod';
 import type { Permission } from '../../domain/permissions';
 import { requirePermission } from '../actor';
 import { DomainError } from '../domainError';
+import { jsonFaultIndex } from './jsonFault';
 import { parseInput, problemResponse } from './problem';
+import { byteOffset, decodeUtf8 } from './utf8';
 
 const JSON_LIMIT_BYTES = 256 * 1024;
 
@@ -47,19 +49,20 @@ export function mediaTypeOf(request: Request): string {
 	return (request.headers.get('content-type') ?? '').split(';')[0]!.trim().toLowerCase();
 }
 
-/** Parses bytes as JSON in valid UTF-8 (a byte-order mark is accepted), or throws `malformedBody`. */
+/** Parses bytes as JSON in valid UTF-8 (a byte-order mark is accepted), or throws `malformedBody` naming the byte. */
 export function parseJson(body: Buffer): unknown {
-	let text: string;
-	try {
-		text = new TextDecoder('utf-8', { fatal: true }).decode(body);
-	} catch {
-		throw new DomainError('malformedBody', 'The body is not valid UTF-8.');
-	}
+	const text = decodeUtf8(body);
 	if (text.trim() === '') throw new DomainError('malformedBody', 'The body is empty.');
 	try {
 		return JSON.parse(text);
 	} catch (error) {
-		throw new DomainError('malformedBody', `The body is not JSON: ${(error as Error).message}`);
+		const index = jsonFaultIndex(text);
+		const where =
+			index === null ? '' : ` from byte ${byteOffset(body, text, index)} of ${body.length} on`;
+		throw new DomainError(
+			'malformedBody',
+			`The body is not JSON${where}: ${(error as Error).message}`
+		);
 	}
 }
 

@@ -1,9 +1,10 @@
 import { json } from '@sveltejs/kit';
 import type { z } from 'zod';
+import { plainIssue } from '../../domain/plainIssue';
 import { DomainError, type DomainErrorCode, type FieldError } from '../domainError';
 
 /** The one table of codes and HTTP statuses. */
-const STATUS: Record<DomainErrorCode, { status: number; title: string }> = {
+export const PROBLEMS: Record<DomainErrorCode, { status: number; title: string }> = {
 	notSignedIn: { status: 401, title: 'Not signed in' },
 	notAllowed: { status: 403, title: 'Not allowed' },
 	notFound: { status: 404, title: 'Not found' },
@@ -24,12 +25,12 @@ const STATUS: Record<DomainErrorCode, { status: number; title: string }> = {
 };
 
 export function statusOf(code: DomainErrorCode): number {
-	return STATUS[code].status;
+	return PROBLEMS[code].status;
 }
 
 /** Answers a refusal as `application/problem+json` (RFC 9457) with an `errors` list for fields. */
 export function problemResponse(error: DomainError): Response {
-	const { status, title } = STATUS[error.code];
+	const { status, title } = PROBLEMS[error.code];
 	return json(
 		{
 			type: `urn:duskline:problem:${error.code}`,
@@ -74,7 +75,7 @@ export function parseInput<Schema extends z.ZodType>(
 	schema: Schema,
 	input: unknown
 ): z.output<Schema> {
-	const parsed = schema.safeParse(input);
+	const parsed = schema.safeParse(input, { error: plainIssue });
 	if (parsed.success) return parsed.data;
 	throw new DomainError('invalid', 'Some fields are not valid.', fieldErrorsOf(parsed.error));
 }

@@ -6,6 +6,7 @@ import { refreshOutlookJob } from '../outlook/refreshOutlookJob';
 import { refreshOutlooksJob } from '../outlook/refreshOutlooksJob';
 import { resumePacketsJob } from '../packets/resumePacketsJob';
 import { sendInvitationJob } from '../people/sendInvitationJob';
+import { silentStreamsJob } from '../streams/silentStreamsJob';
 import type { Job } from './queue';
 
 /** Every kind of job. The payload type is each job's own business. */
@@ -16,6 +17,7 @@ export const ALL_JOBS = [
 	deliverCircularJob,
 	failForgottenDeliveriesJob,
 	resumePacketsJob,
+	silentStreamsJob,
 	mailPersonJob,
 	pushPersonJob,
 	sendInvitationJob

@@ -1,6 +1,7 @@
 import type { App } from '../app';
 import { DomainError } from '../domainError';
 import { readFilePacket } from './readFilePacket';
+import { readVoEvent } from '../voevent/readVoEvent';
 import { readJsonPacket } from './readJsonPacket';
 import type { KeptPacket, ReadOutcome, StreamRow } from './readOutcome';
 
@@ -13,7 +14,10 @@ export type PacketReader = (
 /** By media type; what is not here is refused. */
 const READERS: Record<string, PacketReader> = {
 	'application/json': readJsonPacket,
-	'multipart/form-data': readFilePacket
+	'multipart/form-data': readFilePacket,
+	'application/voevent+xml': readVoEvent,
+	'application/xml': readVoEvent,
+	'text/xml': readVoEvent
 };
 
 /** What a body says, by its media type, read with the stream's settings as they are now. */

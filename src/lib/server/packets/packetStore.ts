@@ -54,7 +54,7 @@ export async function settlePacket(
 	const { state, at, code = null, detail = '' } = outcome;
 	const rows = await executor
 		.update(packet)
-		.set({ state, judgedAt: at, code, detail: detail.slice(0, LONGEST_DETAIL) })
+		.set({ state, judgedAt: at, code, detail: storable(detail).slice(0, LONGEST_DETAIL) })
 		.where(and(eq(packet.id, id), inArray(packet.state, ['received', 'refused'])))
 		.returning({ id: packet.id });
 	return rows.length > 0;
@@ -63,6 +63,11 @@ export async function settlePacket(
 /** A refusal in one line: the fields that are wrong, or the sentence. */
 export function refusalText({ message, errors }: DomainError): string {
 	return errors.map(({ pointer, detail }) => `${pointer} ${detail}`).join('; ') || message;
+}
+
+/** PostgreSQL has no NUL in texts, and a refusal may quote one. */
+function storable(text: string): string {
+	return text.replaceAll('\u0000', '\ufffd');
 }
 
 function sha256Of(body: Buffer, fileSha256 = ''): string {

@@ -1,4 +1,4 @@
-import { and, asc, count, desc, eq, lt } from 'drizzle-orm';
+import { and, asc, count, desc, eq, lt, sql } from 'drizzle-orm';
 import type { QuarantinedPacket } from '../../domain/quarantine';
 import { requirePermission, type Actor } from '../actor';
 import type { App } from '../app';
@@ -18,7 +18,19 @@ export async function listQuarantine(
 	requirePermission(actor, 'editStreams');
 	const refused = eq(packet.state, 'refused');
 	const rows = await app.database
-		.select({ packet, streamCode: stream.code, streamName: stream.name })
+		.select({
+			id: packet.id,
+			streamCode: stream.code,
+			streamName: stream.name,
+			channel: packet.channel,
+			contentType: packet.contentType,
+			bodyBytes: sql<number>`octet_length(${packet.body})`,
+			fileBytes: packet.fileBytes,
+			receivedAt: packet.receivedAt,
+			code: packet.code,
+			reason: packet.detail,
+			beginning: sql<Buffer>`substring(${packet.body} from 1 for ${sql.raw(String(TEXT_SHOWN_BYTES))})`
+		})
 		.from(packet)
 		.innerJoin(stream, eq(stream.id, packet.streamId))
 		.where(refused)
@@ -26,16 +38,12 @@ export async function listQuarantine(
 		.limit(SHOWN);
 	const [total] = await app.database.select({ value: count() }).from(packet).where(refused);
 	return {
-		packets: rows.map(({ packet: row, ...owner }) => ({
-			id: row.id,
-			...owner,
-			channel: row.channel,
-			contentType: row.contentType,
-			bytes: row.body.length + (row.fileBytes ?? 0),
+		packets: rows.map(({ bodyBytes, fileBytes, beginning, ...row }) => ({
+			...row,
+			bytes: bodyBytes + (fileBytes ?? 0),
 			receivedAt: row.receivedAt.toISOString(),
 			code: row.code ?? '',
-			reason: row.detail,
-			text: row.body.subarray(0, TEXT_SHOWN_BYTES).toString('utf8')
+			text: beginning.toString('utf8')
 		})),
 		total: total!.value
 	};

@@ -1,10 +1,9 @@
-import type { AlertPacket } from '../../domain/alertPacket';
-import type { Citation, stream } from '../db/schema/alerts';
+import type { AlertContent } from '../../domain/alertPacket';
+import type { stream } from '../db/schema/alerts';
 
 export type StreamRow = typeof stream.$inferSelect;
 
-/** What an alert says, whatever format it was written in. */
-export type AlertContent = Omit<AlertPacket, 'cites'> & { cites: Citation[] };
+export type { AlertContent };
 
 /** A body as a reader gets it. */
 export type KeptPacket = {

@@ -1,6 +1,9 @@
+import { eq } from 'drizzle-orm';
 import { receiveAlert, type Reception } from '../alerts/alertService';
 import type { App } from '../app';
+import { person } from '../db/schema/people';
 import { DomainError } from '../domainError';
+import { noteHeard } from '../streams/heardStream';
 import { readPacket } from './packetReaders';
 import {
 	keepPacket,
@@ -49,6 +52,8 @@ export async function judgePacket(
 ): Promise<Intake> {
 	try {
 		const outcome = await readPacket(app, source, kept);
+		// What people hand in does not say that the stream's own way works.
+		if (!kept.personId) await noteHeard(app.database, source.id, kept.receivedAt);
 		if (outcome.kind === 'noted') {
 			await settlePacket(app.database, kept.id, {
 				state: 'noted',
@@ -57,14 +62,23 @@ export async function judgePacket(
 			});
 			return outcome;
 		}
-		const notes = replayedBy
-			? [...outcome.notes, `replayed from quarantine by ${replayedBy}`]
-			: outcome.notes;
+		const notes = [...outcome.notes, ...(await handedInNotes(app, kept))];
+		if (replayedBy) notes.push(`replayed from quarantine by ${replayedBy}`);
 		return { kind: 'alert', ...(await receiveAlert(app, source, { ...outcome, kept, notes })) };
 	} catch (error) {
 		if (error instanceof DomainError) await refuse(app, kept, error);
 		throw error;
 	}
+}
+
+/** Who entered it, where it did not come over the stream's own way. */
+async function handedInNotes(app: App, { personId, channel }: PacketRow): Promise<string[]> {
+	if (!personId) return [];
+	const [by] = await app.database
+		.select({ name: person.name })
+		.from(person)
+		.where(eq(person.id, personId));
+	return [`${channel === 'form' ? 'entered by hand' : 'handed in'} by ${by!.name}`];
 }
 
 async function refuse(app: App, kept: PacketRow, error: DomainError): Promise<void> {

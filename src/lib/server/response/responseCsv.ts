@@ -1,4 +1,5 @@
 import { RESPONSE_STEP_LABELS, type ResponseTables } from '../../domain/response';
+import { csvText } from '../export/csvTable';
 
 /** The table as CSV (RFC 4180): CRLF, quotes where needed, times in whole seconds, empty where not reached. */
 export function responseCsv(tables: ResponseTables): string {
@@ -22,7 +23,7 @@ export function responseCsv(tables: ResponseTables): string {
 		seconds(row.medianUpperS),
 		seconds(row.percentile90S)
 	]);
-	return [header, ...rows].map((row) => row.map(csvField).join(',') + '\r\n').join('');
+	return csvText([header, ...rows]);
 }
 
 export function responseCsvName({ days, by, to }: ResponseTables): string {
@@ -31,14 +32,4 @@ export function responseCsvName({ days, by, to }: ResponseTables): string {
 
 function seconds(value: number | null): number | '' {
 	return value === null ? '' : Math.round(value);
-}
-
-/**
- * One field. Text that a spreadsheet would run as a formula gets an apostrophe in front (OWASP, CSV
- * injection): telescope and stream names are typed in by people.
- */
-export function csvField(value: string | number): string {
-	if (typeof value === 'number') return String(value);
-	const safe = /^[=+\-@\t\r]/.test(value) ? `'${value}` : value;
-	return /[",\r\n]/.test(safe) ? `"${safe.replaceAll('"', '""')}"` : safe;
 }

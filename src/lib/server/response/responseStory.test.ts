@@ -6,7 +6,7 @@ import {
 	type ResponseEntry,
 	type ResponseStory
 } from './responseStory';
-import { csvField } from './responseCsv';
+import { csvField } from '../export/csvTable';
 import { stepTime, waitForExposure } from './stepTimes';
 
 const story = (

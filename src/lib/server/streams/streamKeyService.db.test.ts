@@ -118,6 +118,18 @@ describe('a stream', () => {
 		expect((await streamDetail(world.app, observer, 'tambour')).settings.fadeAlpha).toBe(1.3);
 	});
 
+	test('keeps its map of a VOEvent’s Params until another is given', async () => {
+		const { code: _code, ...settings } = TAMBOUR;
+		const paramMap = { significance: { group: 'Trigger', name: 'snr', factor: 1 } };
+		await editStream(world.app, steward, 'tambour', { ...settings, paramMap });
+		await editStream(world.app, steward, 'tambour', settings);
+		const known = async () =>
+			(await streamDetail(world.app, observer, 'tambour')).settings.paramMap;
+		expect(await known()).toEqual(paramMap);
+		await editStream(world.app, steward, 'tambour', { ...settings, paramMap: {} });
+		expect(await known()).toEqual({});
+	});
+
 	test('counts its packets and refusals of the last day and says when it fell silent', async () => {
 		const source = await authenticateStreamKey(world.app, `Bearer ${(await makeKey()).key}`);
 		await world.receive(source, {

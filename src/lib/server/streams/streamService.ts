@@ -182,7 +182,8 @@ function settingsOf({ fade, ...row }: StreamRow): StreamEdit {
 		silentAfterMinutes: row.silentAfterMinutes,
 		fadeM1Mean: fade.m1Mean,
 		fadeM1Spread: fade.m1Spread,
-		fadeAlpha: fade.alpha
+		fadeAlpha: fade.alpha,
+		paramMap: row.paramMap
 	};
 }
 

@@ -68,7 +68,10 @@ export async function boardTransients(
 			firstReceivedAt: row.firstReceivedAt.toISOString(),
 			headline: headline(
 				versions[0]?.area90Deg2 ?? null,
-				own.map((item) => item.stream.streamClass),
+				own.map((item) => ({
+					streamClass: item.stream.streamClass,
+					shapeKind: item.alert.shape?.kind
+				})),
 				ownReports.some((item) => item.kind === 'detection')
 			),
 			taken:

@@ -29,9 +29,8 @@ export async function deriveRegion(
 	change.touch(transientId);
 	const parts = await liveParts(tx, transientId);
 	if (parts.length === 0) return closeWithoutAlerts(app, tx, transientId);
-	const stored = await storeNextRegion(app, tx, transientId, parts, cause);
+	const stored = await storeNextRegion(app, tx, transientId, parts, cause, { state: 'open' });
 	await tellOffTarget(app, tx, transientId, stored);
-	await tx.update(transient).set({ state: 'open' }).where(eq(transient.id, transientId));
 	await requestOutlook(app, tx, transientId);
 }
 
@@ -58,7 +57,8 @@ async function storeNextRegion(
 	tx: Transaction,
 	transientId: string,
 	parts: LivePart[],
-	cause: string
+	cause: string,
+	also: { state?: 'open' } = {}
 ): Promise<{ version: number; points: RegionPoints }> {
 	const t0 = new Date(Math.min(...parts.map((part) => part.t0.getTime())));
 	const { joint, notFoundCount, tooFaintChance } = await regionNow(app, tx, transientId, parts, t0);
@@ -92,7 +92,7 @@ async function storeNextRegion(
 	});
 	await tx
 		.update(transient)
-		.set({ regionVersion: version, t0 })
+		.set({ regionVersion: version, t0, ...also })
 		.where(eq(transient.id, transientId));
 	await writeJournal(tx, {
 		transientId,

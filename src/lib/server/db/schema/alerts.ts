@@ -21,6 +21,7 @@ import type {
 	PacketState,
 	StreamClass
 } from '../../../domain/vocabulary';
+import type { ParamMap } from '../../../domain/stream';
 import type { Shape } from '../../../sky/regions/shape';
 import type { FadeModel } from '../../../sky/outlook/outlook';
 import { bytes, instant, skyRegion } from '../columns';
@@ -128,11 +129,7 @@ export const streamBroker = pgTable(
 	(table) => [unique('stream_broker_address').on(table.streamId, table.host, table.port)]
 );
 
-/** A Param of a VOEvent by name, in a Group or outside; the value is multiplied by `factor`. */
-export type ParamSource = { group: string; name: string; factor: number };
-export type ParamMap = Partial<
-	Record<'significance' | 'falseAlarmPerYear' | 'systematicDeg', ParamSource>
->;
+export type { ParamMap };
 
 /** An earlier packet; without `stream` (an IVORN does not say which) it may be any stream's. */
 export type Citation = { stream: string | null; packetId: string; relation: CitationRelation };
