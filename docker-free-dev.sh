@@ -40,6 +40,7 @@ Ports, all on 127.0.0.1 (variable, default):
   DUSKLINE_PUSH_PAGE_PORT   +4     the push service's page
   DUSKLINE_BROKER_PORT      +5     the VOEvent broker
   DUSKLINE_BROKER_PAGE_PORT +6     the VOEvent broker's page
+  DUSKLINE_STORAGE_PORT     +7     the object storage
   DUSKLINE_PG_PORT          54329  PostgreSQL
 
 Others: DUSKLINE_FEED=off leaves out the demo feed; LOG_LEVEL (info); DUSKLINE_PG_BIN and
@@ -56,6 +57,7 @@ read_ports() {
 	PUSH_PAGE_PORT=${DUSKLINE_PUSH_PAGE_PORT:-$((PORT + 4))}
 	BROKER_PORT=${DUSKLINE_BROKER_PORT:-$((PORT + 5))}
 	BROKER_PAGE_PORT=${DUSKLINE_BROKER_PAGE_PORT:-$((PORT + 6))}
+	STORAGE_PORT=${DUSKLINE_STORAGE_PORT:-$((PORT + 7))}
 	PG_PORT=${DUSKLINE_PG_PORT:-54329}
 }
 
@@ -123,7 +125,7 @@ run_demo() {
 	print_welcome
 	start_feed
 	STOPPING_TEXT='Stopping'
-	watch_over app mailbox push broker postgres
+	watch_over app mailbox push broker storage postgres
 }
 
 # Ends what an earlier start left running when it was cut off.

@@ -11,7 +11,7 @@ import { createServer as createTlsServer } from 'node:https';
 export type Answer = {
 	status: number;
 	headers?: Record<string, string>;
-	body?: string;
+	body?: string | Buffer;
 	json?: unknown;
 };
 

@@ -1,6 +1,8 @@
 // Entry of the compute threads (built by vite.workers.config.ts, run by outlook/computePool.ts).
 import { constants, setPriority } from 'node:os';
 import { isMainThread } from 'node:worker_threads';
+import { FileFault } from './lib/server/fits/fileFault';
+import { readSkyFile } from './lib/server/skyFiles/readSkyFile';
 import { searchedRegion, type SearchedRegion } from './lib/sky/catch/searchedRegion';
 import type { NotFound } from './lib/sky/catch/looks';
 import { computeOutlook } from './lib/sky/outlook/computeOutlook';
@@ -15,6 +17,7 @@ import type { MapShape, Shape } from './lib/sky/regions/shape';
 if (!isMainThread) setPriority(constants.priority.PRIORITY_BELOW_NORMAL);
 
 export { mocOutline as outline } from './lib/sky/moc/mocOutline';
+export { regionFile } from './lib/server/skyFiles/regionFile';
 export { outlookText } from './lib/server/outlook/outlookText';
 
 export function outlook(input: OutlookInput): Outlook {
@@ -35,6 +38,18 @@ export function mapShape(
 		if (!(error instanceof MapFault)) throw error;
 		const { field, entry, detail } = error;
 		return { fault: { field, entry, detail } };
+	}
+}
+
+/** The same for a file's bytes. */
+export function fileShape(
+	bytes: ArrayBuffer
+): { shape: MapShape } | { fault: { place: string; detail: string } } {
+	try {
+		return { shape: readSkyFile(new Uint8Array(bytes)) };
+	} catch (error) {
+		if (!(error instanceof FileFault)) throw error;
+		return { fault: { place: error.place, detail: error.detail } };
 	}
 }
 

@@ -29,7 +29,7 @@ export_environment() {
 	DATABASE_URL=$(database_url)
 	ORIGIN=http://127.0.0.1:$PORT
 	HOST=127.0.0.1
-	BODY_SIZE_LIMIT=64M
+	BODY_SIZE_LIMIT=66M
 	SMTP_URL=smtp://127.0.0.1:$SMTP_PORT
 	VAPID_SUBJECT=mailto:duty@duskline.example
 	DUSKLINE_DEMO=on
@@ -44,6 +44,12 @@ export_environment() {
 	DUSKLINE_BROKER_PAGE_PORT=$BROKER_PAGE_PORT
 	DUSKLINE_BROKER_URL=http://127.0.0.1:$BROKER_PAGE_PORT
 	DUSKLINE_DEMO_BROKER=127.0.0.1:$BROKER_PORT
+	DUSKLINE_STORAGE_PORT=$STORAGE_PORT
+	DUSKLINE_STORAGE_STATE=$LOCAL/storage
+	STORAGE_URL=http://127.0.0.1:$STORAGE_PORT
+	STORAGE_BUCKET=duskline
+	STORAGE_ACCESS_KEY=duskline
+	STORAGE_SECRET_KEY=$(printf 'storage %s' "$AUTH_SECRET" | sha256sum | cut -c1-40)
 	set +a
 	# The application's own PORT; each fake has a variable of its own.
 	export PORT
@@ -57,6 +63,7 @@ require_free_ports() {
 	require_free_port "$PUSH_PAGE_PORT" "the push service's page" DUSKLINE_PUSH_PAGE_PORT
 	require_free_port "$BROKER_PORT" 'the VOEvent broker' DUSKLINE_BROKER_PORT
 	require_free_port "$BROKER_PAGE_PORT" "the VOEvent broker's page" DUSKLINE_BROKER_PAGE_PORT
+	require_free_port "$STORAGE_PORT" 'the object storage' DUSKLINE_STORAGE_PORT
 }
 
 # Both leave a mark beside the data they belong to, so that a later start need not ask again; the seed's
@@ -84,6 +91,8 @@ start_fakes() {
 	: >"$LOG_DIR/push.log"
 	: >"$LOG_DIR/broker.log"
 	spawn broker "$LOG_DIR/broker.log" node --import tsx fakes/voeventBroker.ts
+	: >"$LOG_DIR/storage.log"
+	spawn storage "$LOG_DIR/storage.log" node --import tsx fakes/objectStore.ts
 	spawn push "$LOG_DIR/push.log" node --import tsx fakes/pushService.ts
 	spawn mailbox "$LOG_DIR/mailbox.log" node --import tsx fakes/mailbox.ts
 }
@@ -92,6 +101,7 @@ await_fakes() {
 	wait_until_answers mailbox "$MAILBOX_PORT" / 30 "$LOG_DIR/mailbox.log"
 	wait_until_answers push "$PUSH_PAGE_PORT" / 30 "$LOG_DIR/push.log"
 	wait_until_answers broker "$BROKER_PAGE_PORT" / 30 "$LOG_DIR/broker.log"
+	wait_until_answers storage "$STORAGE_PORT" / 30 "$LOG_DIR/storage.log"
 }
 
 # A fingerprint of all that the build is made from.

@@ -97,7 +97,7 @@ end_process() {
 # Ends what is recorded, the database last; what a start that was cut off left behind included.
 end_everything() {
 	local file name
-	for name in feed app workers broker push mailbox; do end_process "$name"; done
+	for name in feed app workers storage broker push mailbox; do end_process "$name"; done
 	for file in "$RUN_DIR"/*.pid; do
 		name=$(basename "$file" .pid)
 		[[ -e $file && $name != start && $name != postgres ]] && end_process "$name"

@@ -42,6 +42,7 @@ export async function openCircularWorld(environment: Record<string, string> = {}
 		queue,
 		// Circulars never compute an outlook: a call would be a mistake.
 		compute: undefined as unknown as App['compute'],
+		files: null,
 		now: () => NOW
 	};
 	return {

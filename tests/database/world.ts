@@ -15,8 +15,9 @@ import { outlookText } from '../../src/lib/server/outlook/outlookText';
 import { computeOutlook } from '../../src/lib/sky/outlook/computeOutlook';
 import { searchedRegion } from '../../src/lib/sky/catch/searchedRegion';
 import { jointRegion } from '../../src/lib/sky/regions/jointRegion';
-import { mapShape } from '../../src/compute';
+import { fileShape, mapShape, regionFile } from '../../src/compute';
 import { mocOutline } from '../../src/lib/sky/moc/mocOutline';
+import { memoryStore } from './memoryStore';
 import { createTestDatabase } from './testDatabase';
 
 /** A winter night in which Cerro Almendra (30° S, 70° W) is dark and Orion is up. */
@@ -55,8 +56,11 @@ export async function openWorld(start = NIGHT) {
 				Promise.resolve(searchedRegion(shapes, reports, t0Ms, fade)),
 			outline: (moc) => Promise.resolve(mocOutline(moc)),
 			mapShape: (source) => Promise.resolve(mapShape(source)),
+			fileShape: async (load) => fileShape(await load()),
+			regionFile: (input) => Promise.resolve(regionFile(structuredClone(input))),
 			close: () => Promise.resolve()
 		},
+		files: memoryStore(),
 		now: () => new Date(nowMs)
 	};
 	return {

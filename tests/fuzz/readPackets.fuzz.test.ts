@@ -1,6 +1,7 @@
 import { readdirSync, readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
 import { alertContentSchema } from '../../src/lib/domain/alertPacket';
+import { fileShape } from '../../src/compute';
 import type { App } from '../../src/lib/server/app';
 import { DomainError } from '../../src/lib/server/domainError';
 import { statusOf } from '../../src/lib/server/http/problem';
@@ -11,7 +12,8 @@ import { mutate, seededRandom } from './mutate';
 /** What is mutated: a new format's fixtures are one more entry. */
 const FORMATS: { name: string; contentType: string; bodies: Buffer[] }[] = [
 	{ name: 'VOEvent', contentType: 'application/voevent+xml', bodies: fixtures('.xml') },
-	{ name: 'JSON', contentType: 'application/json', bodies: fixtures('.json') }
+	{ name: 'JSON', contentType: 'application/json', bodies: fixtures('.json') },
+	{ name: 'Files', contentType: 'multipart/form-data', bodies: skyFiles() }
 ];
 const ROUNDS = 20_000;
 const SEED = 20_261_201;
@@ -46,12 +48,40 @@ const source: StreamRow = {
 	createdAt: new Date('2026-01-01T00:00:00Z')
 };
 
-/** Reading needs neither database nor clock; what reaches for them fails here. */
-const app = {} as App;
+/** Maps and coverage maps, as they come beside a packet. */
+function skyFiles(): Buffer[] {
+	const folder = 'fixtures/fits';
+	const standard = JSON.parse(readFileSync('fixtures/sky/moc-2.0-examples.json', 'utf8')) as {
+		ascii_smoc: string;
+		json_smoc: string;
+	};
+	return [
+		...readdirSync(folder).map((name) => readFileSync(`${folder}/${name}`)),
+		Buffer.from(standard.ascii_smoc),
+		Buffer.from(standard.json_smoc)
+	];
+}
+
+const FILELESS = Buffer.from(
+	JSON.stringify({
+		packetId: 'TB-1',
+		serial: 1,
+		role: 'observation',
+		kind: 'report',
+		t0: '2026-12-01T03:41:27Z'
+	})
+);
+
+/** Reading needs neither database nor clock; what reaches for them fails here. Of a file, its bytes are there. */
+const appWith = (file: Buffer) =>
+	({
+		files: { get: () => Promise.resolve(new Uint8Array(file).buffer) },
+		compute: { fileShape: async (load: () => Promise<ArrayBuffer>) => fileShape(await load()) }
+	}) as unknown as App;
 
 type Verdict = 'alert' | 'noted' | 'refused';
 
-async function verdictOn(kept: KeptPacket): Promise<Verdict> {
+async function verdictOn(kept: KeptPacket, app: App): Promise<Verdict> {
 	try {
 		const outcome = await readPacket(app, source, kept);
 		if (outcome.kind === 'noted') {
@@ -86,8 +116,16 @@ describe('packets changed at random', () => {
 				const start = performance.now();
 				try {
 					const receivedAt = new Date('2026-12-01T04:00:00Z');
-					const kept = { id: 1, contentType, body, fileKey: null, fileName: null, receivedAt };
-					verdicts[await verdictOn(kept)]++;
+					const isFile = contentType === 'multipart/form-data';
+					const kept = {
+						id: 1,
+						contentType,
+						body: isFile ? FILELESS : body,
+						fileKey: isFile ? 'packets/1' : null,
+						fileName: null,
+						receivedAt
+					};
+					verdicts[await verdictOn(kept, appWith(body))]++;
 				} catch (error) {
 					throw new Error(
 						`${name}, seed ${SEED}, round ${round}: ${body.toString('base64').slice(0, 20_000)}`,

@@ -66,6 +66,8 @@ export const ROUTE_GUARDS: Record<string, Guard> = {
 	'/(app)/transients/new/+page.server.ts › load': 'submitAlert',
 	'/(app)/transients/new/+page.server.ts › action default': 'submitAlert',
 	'/(app)/transients/[designation=designation]/+page.server.ts › load': 'viewTransients',
+	'/(app)/transients/new/file/+page.server.ts › load': 'submitAlert',
+	'/(app)/transients/new/file/+page.server.ts › action default': 'submitAlert',
 
 	'/(partner)/my/circulars/+page.server.ts › load': 'viewCirculars',
 	'/(partner)/my/circulars/[number=circular]/+page.server.ts › load': 'viewCirculars',
@@ -107,6 +109,8 @@ export const ROUTE_GUARDS: Record<string, Guard> = {
 	'/api/v1/transients/[designation=designation]/decision/+server.ts › POST': 'decideTransient',
 	'/api/v1/transients/[designation=designation]/merge/+server.ts › POST': 'regroupAlerts',
 	'/api/v1/transients/[designation=designation]/region/+server.ts › GET': 'viewBoard',
+	'/api/v1/transients/[designation=designation]/region.fits/+server.ts › GET': 'viewTransients',
+	'/api/v1/transients/[designation=designation]/region.moc/+server.ts › GET': 'viewTransients',
 	'/api/v1/transients/[designation=designation]/take/+server.ts › POST': 'takeTransient',
 	'/api/v1/transients/[designation=designation]/voevent/+server.ts › GET': 'viewTransients'
 };

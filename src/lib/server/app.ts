@@ -3,6 +3,7 @@ import type { Config } from './config';
 import type { Database } from './db/database';
 import type { ComputePool } from './outlook/computePool';
 import type { Queue } from './jobs/queue';
+import type { ObjectStore } from './storage/objectStore';
 
 /** What a use case works with: passed in, so that tests bring their own database and clock. */
 export type App = {
@@ -11,5 +12,7 @@ export type App = {
 	pool: pg.Pool;
 	queue: Queue;
 	compute: ComputePool;
+	/** Files that came with packets; null where no storage is configured. */
+	files: ObjectStore | null;
 	now: () => Date;
 };

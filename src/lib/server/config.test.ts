@@ -45,6 +45,22 @@ describe('parseConfig', () => {
 		}
 	});
 
+	it('takes object storage whole or not at all', () => {
+		const storage = {
+			STORAGE_URL: 'https://storage.example',
+			STORAGE_BUCKET: 'files',
+			STORAGE_ACCESS_KEY: 'key',
+			STORAGE_SECRET_KEY: 'secret'
+		};
+		expect(parseConfig(GOOD).storage).toBeNull();
+		expect(parseConfig({ ...GOOD, ...storage }).storage).toMatchObject({ region: 'us-east-1' });
+		expect(refusalOf({ ...GOOD, ...storage, STORAGE_SECRET_KEY: undefined })).toMatch(
+			/STORAGE_URL needs STORAGE_SECRET_KEY too/
+		);
+		expect(refusalOf({ ...GOOD, ...storage, STORAGE_BUCKET: 'Files' })).toMatch(/STORAGE_BUCKET/);
+		expect(refusalOf({ ...GOOD, ...storage, STORAGE_URL: 's3://files' })).toMatch(/STORAGE_URL/);
+	});
+
 	it('reads the demo’s broker as host and port', () => {
 		const broker = (text?: string) =>
 			parseConfig({ ...GOOD, DUSKLINE_DEMO_BROKER: text }).demoBroker;

@@ -33,6 +33,16 @@ const environmentSchema = z
 			.string()
 			.regex(/^(mailto:|https:)/, 'must be a mailto: or https: address')
 			.optional(),
+		STORAGE_URL: z
+			.url({ protocol: /^https?$/, error: 'must be the http(s) address of an S3 service' })
+			.optional(),
+		STORAGE_BUCKET: z
+			.string()
+			.regex(/^[a-z0-9][a-z0-9.-]{1,61}[a-z0-9]$/, 'must be a bucket’s name: lower case, 3 to 63')
+			.optional(),
+		STORAGE_ACCESS_KEY: z.string().min(1).optional(),
+		STORAGE_SECRET_KEY: z.string().min(1).optional(),
+		STORAGE_REGION: z.string().min(1).default('us-east-1'),
 		LOG_LEVEL: z.enum(['trace', 'debug', 'info', 'warn', 'error', 'silent']).default('info')
 	})
 	.superRefine((env, context) => {
@@ -50,6 +60,20 @@ const environmentSchema = z
 				code: 'custom',
 				path: ['VAPID_PUBLIC_KEY'],
 				message: 'VAPID_PUBLIC_KEY, VAPID_PRIVATE_KEY and VAPID_SUBJECT go together'
+			});
+		}
+		const names = [
+			'STORAGE_URL',
+			'STORAGE_BUCKET',
+			'STORAGE_ACCESS_KEY',
+			'STORAGE_SECRET_KEY'
+		] as const;
+		const missing = names.filter((name) => !env[name]);
+		if (missing.length > 0 && missing.length < names.length) {
+			context.addIssue({
+				code: 'custom',
+				path: ['STORAGE_URL'],
+				message: `needs ${missing.join(', ')} too: ${names.join(', ')} go together`
 			});
 		}
 	});
@@ -70,6 +94,14 @@ export type Config = {
 	demoBroker: { host: string; port: number } | null;
 	computeThreads: number;
 	vapid: { publicKey: string; privateKey: string; subject: string } | null;
+	/** Object storage by the S3 API, for files that come with packets; null: such packets are refused. */
+	storage: {
+		url: string;
+		bucket: string;
+		accessKey: string;
+		secretKey: string;
+		region: string;
+	} | null;
 	logLevel: string;
 };
 
@@ -111,6 +143,16 @@ export function parseConfig(environment: Record<string, string | undefined>): Co
 						publicKey: env.VAPID_PUBLIC_KEY,
 						privateKey: env.VAPID_PRIVATE_KEY,
 						subject: env.VAPID_SUBJECT
+					}
+				: null,
+		storage:
+			env.STORAGE_URL && env.STORAGE_BUCKET && env.STORAGE_ACCESS_KEY && env.STORAGE_SECRET_KEY
+				? {
+						url: env.STORAGE_URL,
+						bucket: env.STORAGE_BUCKET,
+						accessKey: env.STORAGE_ACCESS_KEY,
+						secretKey: env.STORAGE_SECRET_KEY,
+						region: env.STORAGE_REGION
 					}
 				: null,
 		logLevel: env.LOG_LEVEL

@@ -10,6 +10,7 @@ import { prepareQueues, runWorkers } from './jobs/runWorkers';
 import { logger } from './logger';
 import { closeMailers } from './notify/mailer';
 import { createComputePool } from './outlook/computePool';
+import { createObjectStore } from './storage/objectStore';
 import { startBrokerSubscriber } from './sockets/brokerSubscriber';
 
 export type Runtime = { app: App; stop: () => Promise<void> };
@@ -32,6 +33,7 @@ export async function startRuntime(): Promise<Runtime> {
 		pool: connection.pool,
 		queue: bossQueue(boss),
 		compute,
+		files: createObjectStore(settings.storage),
 		now: () => new Date()
 	};
 	// Alerts of earlier versions have no sky of their own yet.

@@ -13,13 +13,19 @@ import { join } from 'node:path';
 import { setTimeout as delay } from 'node:timers/promises';
 import webPush from 'web-push';
 import { startMailbox } from '../../../fakes/mailbox';
+import { startObjectStore } from '../../../fakes/objectStore';
 import { startPushService } from '../../../fakes/pushService';
 import { startVoeventBroker } from '../../../fakes/voeventBroker';
 import { freePort, startCluster } from '../../database/cluster';
 import { administer } from '../../database/templateDatabase';
 import type { StackAddresses } from './addresses';
 
-export type Stack = { addresses: StackAddresses; stop: () => Promise<void> };
+export type Stack = {
+	addresses: StackAddresses;
+	/** Of the application, for measuring its memory. */
+	applicationPid: number;
+	stop: () => Promise<void>;
+};
 
 const START_TIMEOUT_MS = 60_000;
 const STOP_TIMEOUT_MS = 10_000;
@@ -49,6 +55,17 @@ export async function startStack(options: { durable?: boolean } = {}): Promise<S
 		stops.push(mailbox.close);
 		const push = await startPushService({ pushPort: 0, httpPort: 0, stateDirectory: directory });
 		stops.push(push.close);
+		const keys = {
+			bucket: 'duskline',
+			accessKey: 'duskline',
+			secretKey: randomBytes(16).toString('hex')
+		};
+		const storage = await startObjectStore({
+			port: 0,
+			stateDirectory: join(directory, 'storage'),
+			...keys
+		});
+		stops.push(storage.close);
 		const broker = await startVoeventBroker({ vtpPort: 0, httpPort: 0 });
 		stops.push(broker.close);
 
@@ -61,6 +78,7 @@ export async function startStack(options: { durable?: boolean } = {}): Promise<S
 			smtpUrl: mailbox.smtpUrl,
 			mailboxUrl: mailbox.url,
 			certificatePath: push.certificatePath,
+			storage: { url: storage.url, ...keys },
 			brokerPort: broker.port
 		});
 		for (const script of ['src/lib/server/db/migrate.ts', 'src/lib/server/demo/seed.ts']) {
@@ -81,6 +99,7 @@ export async function startStack(options: { durable?: boolean } = {}): Promise<S
 				databaseUrl: cluster.urlOf('duskline'),
 				streamKeys: streams
 			},
+			applicationPid: application.pid!,
 			stop
 		};
 	} catch (error) {
@@ -96,6 +115,7 @@ function environmentOf(parts: {
 	smtpUrl: string;
 	mailboxUrl: string;
 	certificatePath: string;
+	storage: { url: string; bucket: string; accessKey: string; secretKey: string };
 	brokerPort: number;
 }): NodeJS.ProcessEnv {
 	const vapid = webPush.generateVAPIDKeys();
@@ -107,12 +127,16 @@ function environmentOf(parts: {
 		ORIGIN: `http://127.0.0.1:${parts.port}`,
 		HOST: '127.0.0.1',
 		PORT: String(parts.port),
-		BODY_SIZE_LIMIT: '64M',
+		BODY_SIZE_LIMIT: '66M',
 		AUTH_SECRET: randomBytes(32).toString('hex'),
 		SMTP_URL: parts.smtpUrl,
 		VAPID_PUBLIC_KEY: vapid.publicKey,
 		VAPID_PRIVATE_KEY: vapid.privateKey,
 		VAPID_SUBJECT: 'mailto:duty@duskline.example',
+		STORAGE_URL: parts.storage.url,
+		STORAGE_BUCKET: parts.storage.bucket,
+		STORAGE_ACCESS_KEY: parts.storage.accessKey,
+		STORAGE_SECRET_KEY: parts.storage.secretKey,
 		NODE_EXTRA_CA_CERTS: parts.certificatePath,
 		DUSKLINE_DEMO: 'on',
 		DUSKLINE_DEMO_KEYS_FILE: parts.keysFile,

@@ -22,7 +22,7 @@ import {
 } from './alertStore';
 import { arrivalSummary, clockNotes } from './arrivalText';
 import { fillAlertSkyJob } from './fillAlertSkyJob';
-import { normalShape } from './normalShape';
+import { mapOf, normalShape } from './normalShape';
 import { placeAlert, type Placement } from './association';
 
 /** What the sender is told: the same for the first packet and for every copy of it. */
@@ -46,13 +46,15 @@ export type Reception = { receipt: Receipt; isNew: boolean };
 export async function receiveAlert(
 	app: App,
 	source: StreamRow,
-	received: { content: AlertContent; kept: PacketRow; notes: string[] }
+	received: { content: AlertContent; kept: PacketRow; notes: string[]; hasNormalShape?: true }
 ): Promise<Reception> {
 	const { content, kept } = received;
 	const { receivedAt } = kept;
 	const t0 = new Date(content.t0);
 	const notes = [...clockNotes(t0, receivedAt), ...received.notes];
-	const shape = await normalShape(app, content.shape);
+	const shape = received.hasNormalShape
+		? mapOf(content.shape)
+		: await normalShape(app, content.shape);
 	const reception = await writeTransaction(app, async (tx, change) => {
 		await lockTriage(tx);
 		const serials = await serialsOf(tx, source.id, content.packetId);

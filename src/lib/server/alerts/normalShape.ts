@@ -27,6 +27,13 @@ export async function normalShape(app: App, shape: AlertPacket['shape']): Promis
 	return shape;
 }
 
+/** A map that is in its normal form already, as `mapShapeFrom` made it. */
+export function mapOf(shape: AlertPacket['shape']): Shape | null {
+	if (shape?.kind !== 'map') return null;
+	const { uniq = [], density = [] } = shape;
+	return { kind: 'map', uniq, density };
+}
+
 function invalid(pointer: string, detail: string): DomainError {
 	return new DomainError('invalid', 'Some fields are not valid.', [{ pointer, detail }]);
 }

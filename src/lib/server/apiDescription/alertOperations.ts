@@ -26,7 +26,11 @@ const VOEVENT = {
 
 const fileForm = z.object({
 	packet: z.string().describe('The packet as JSON, without shape'),
-	file: z.string().describe('The region: a HEALPix map or a coverage map (MOC) as FITS')
+	file: z
+		.string()
+		.describe(
+			'The region: a HEALPix map in FITS, or a coverage map (MOC) in FITS, JSON or ASCII; gzip is fine; at most 64 MiB'
+		)
 });
 
 export const ALERT_OPERATIONS: Operation[] = [

@@ -36,12 +36,15 @@ async function main(): Promise<void> {
 				jointRegion: async (parts) => jointRegion(parts),
 				outline: leftToWorkers,
 				mapShape: () => Promise.reject(new Error('the demo has no maps')),
+				fileShape: () => Promise.reject(new Error('the demo has no files')),
+				regionFile: leftToWorkers,
 				searchedRegion: async ({ shapes, reports, t0Ms, fade }) =>
 					searchedRegion(shapes, reports, t0Ms, fade),
 				outlook: leftToWorkers,
 				outlookText: leftToWorkers,
 				close: async () => {}
 			},
+			files: null,
 			now: () => new Date()
 		};
 		const { made, transients, keys } = await seedDemo(app, readKeys(keysFile));

@@ -11,6 +11,7 @@ import type { MocRanges } from '../../sky/moc/moc';
 import type { MapField } from '../../sky/regions/mapFault';
 import type { MapSource } from '../../sky/regions/mapShapeFrom';
 import type { MapShape, Shape } from '../../sky/regions/shape';
+import type { RegionFileInput } from '../skyFiles/regionFile';
 import type { OutlookText } from './outlookText';
 
 /** The arguments of `searchedRegion`, in one piece for a thread. */
@@ -25,6 +26,9 @@ export type SearchInput = {
 export type MapAnswer =
 	{ shape: MapShape } | { fault: { field: MapField; entry: number | null; detail: string } };
 
+/** A file's region in its normal form, or where in the file what is wrong. */
+export type FileAnswer = { shape: MapShape } | { fault: { place: string; detail: string } };
+
 /** The heavy computations, off the web process's event loop. */
 export type ComputePool = {
 	outlook: (input: OutlookInput) => Promise<Outlook>;
@@ -33,6 +37,10 @@ export type ComputePool = {
 	jointRegion: (parts: Shape[]) => Promise<JointRegion>;
 	searchedRegion: (input: SearchInput) => Promise<SearchedRegion>;
 	mapShape: (source: MapSource) => Promise<MapAnswer>;
+	/** The region in a file's bytes; `load` is called when it is this file's turn, so that few are held at once. */
+	fileShape: (load: () => Promise<ArrayBuffer>) => Promise<FileAnswer>;
+	/** The joint region as a multi-order map in FITS. */
+	regionFile: (input: RegionFileInput) => Promise<Uint8Array>;
 	/** Closed rings around a coverage map. */
 	outline: (moc: MocRanges) => Promise<Rings>;
 	close: () => Promise<void>;
@@ -56,12 +64,23 @@ export function createComputePool(threads: number): ComputePool {
 		maxThreads: 1,
 		idleTimeout: READER_IDLE_MS
 	});
+	let turn: Promise<unknown> = Promise.resolve();
+	const fileShape = async (load: () => Promise<ArrayBuffer>) => {
+		const bytes = await load();
+		return reader.run(bytes, { name: 'fileShape', transferList: [bytes] }) as Promise<FileAnswer>;
+	};
 	return {
 		outlook: (input) => pool.run(input, { name: 'outlook' }) as Promise<Outlook>,
 		outlookText: (input) => pool.run(input, { name: 'outlookText' }) as Promise<OutlookText>,
 		jointRegion: (parts) => pool.run(parts, { name: 'joint' }) as Promise<JointRegion>,
 		searchedRegion: (input) => pool.run(input, { name: 'searched' }) as Promise<SearchedRegion>,
 		mapShape: (source) => reader.run(source, { name: 'mapShape' }) as Promise<MapAnswer>,
+		fileShape: (load) => {
+			const answer = turn.then(() => fileShape(load));
+			turn = answer.catch(() => undefined);
+			return answer;
+		},
+		regionFile: (input) => pool.run(input, { name: 'regionFile' }) as Promise<Uint8Array>,
 		outline: (moc) => pool.run(moc, { name: 'outline' }) as Promise<Rings>,
 		close: async () => {
 			await Promise.all([pool.destroy(), reader.destroy()]);

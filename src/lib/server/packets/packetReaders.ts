@@ -1,5 +1,6 @@
 import type { App } from '../app';
 import { DomainError } from '../domainError';
+import { readFilePacket } from './readFilePacket';
 import { readVoEvent } from '../voevent/readVoEvent';
 import { readJsonPacket } from './readJsonPacket';
 import type { KeptPacket, ReadOutcome, StreamRow } from './readOutcome';
@@ -13,6 +14,7 @@ export type PacketReader = (
 /** By media type; what is not here is refused. */
 const READERS: Record<string, PacketReader> = {
 	'application/json': readJsonPacket,
+	'multipart/form-data': readFilePacket,
 	'application/voevent+xml': readVoEvent,
 	'application/xml': readVoEvent,
 	'text/xml': readVoEvent

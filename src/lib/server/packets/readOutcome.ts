@@ -20,4 +20,11 @@ export type KeptPacket = {
  * packet that is kept but is no alert. It throws a DomainError for what can't be read.
  */
 export type ReadOutcome =
-	{ kind: 'alert'; content: AlertContent; notes: string[] } | { kind: 'noted'; reason: string };
+	| {
+			kind: 'alert';
+			content: AlertContent;
+			notes: string[];
+			/** The content's map is in its normal form already. */
+			hasNormalShape?: true;
+	  }
+	| { kind: 'noted'; reason: string };

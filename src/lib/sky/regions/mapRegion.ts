@@ -12,7 +12,8 @@ export function mapRegion(map: SortedMap): JointRegion {
 	return columnsRegion(columnsOfMap(map));
 }
 
-function columnsOfMap({ order, orders, starts, density }: SortedMap): CellColumns {
+/** Cells of a map that hold anything that matters, as columns. */
+export function columnsOfMap({ order, orders, starts, density }: SortedMap): CellColumns {
 	const least = density.reduce((most, value) => Math.max(most, value), 0) * NEGLIGIBLE_SHARE;
 	const kept = density.reduce((count, value) => count + (value > least ? 1 : 0), 0);
 	const cells = emptyColumns(kept, order);

@@ -91,12 +91,13 @@ function fillFromCells(source: MultiOrderMap, cellsMax: number): LeanMap {
 	const map = sortedMap(source);
 	const lean = leanMap(1, cellsMax);
 	const end = 12 * 4 ** map.order;
+	const sides = Array.from({ length: map.order + 1 }, (_, order) => 4 ** (map.order - order));
 	let reached = 0;
 	for (let i = 0; i < map.starts.length; i++) {
 		const start = map.starts[i] ?? 0;
 		const order = map.orders[i] ?? 0;
 		fillGap(lean, map.order, reached, start);
-		lean.add(order, start / 4 ** (map.order - order), map.density[i] ?? 0);
+		lean.add(order, start / (sides[order] ?? 1), map.density[i] ?? 0);
 		reached = map.ends[i] ?? 0;
 	}
 	fillGap(lean, map.order, reached, end);

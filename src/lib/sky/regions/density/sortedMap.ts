@@ -1,5 +1,6 @@
-import { CELL_ORDER_MAX, cellAreaSr, fromUniq } from '../../healpix/healpix';
+import { CELL_ORDER_MAX, cellAreaSr } from '../../healpix/healpix';
 import { MapFault } from '../mapFault';
+import { sortedIndex } from './sortedIndex';
 
 /** Cells in order of position: index ranges at the map's finest order, their density and probability. */
 export type SortedMap = {
@@ -18,6 +19,8 @@ export type SortedMap = {
 export type MapCells = { uniq: ArrayLike<number>; density: ArrayLike<number> };
 
 const UNIQ_END = 16 * 4 ** CELL_ORDER_MAX;
+/** Looked up in the inner loops, in which powers would cost more than all the rest. */
+const POWERS = Array.from({ length: CELL_ORDER_MAX + 2 }, (_, order) => 4 ** order);
 
 /** A multi-order map sorted, checked and normalised; throws a MapFault that names what is wrong. */
 export function sortedMap({ uniq, density: given }: MapCells): SortedMap {
@@ -30,10 +33,15 @@ export function sortedMap({ uniq, density: given }: MapCells): SortedMap {
 		);
 	}
 	const { order, orders: givenOrders, index, starts } = placesOf(uniq);
-	const orders = Uint8Array.from(index, (from) => givenOrders[from] ?? 0);
-	const density = Float64Array.from(index, (from) => checkedDensity('density', given, from));
+	const orders = new Uint8Array(count);
+	const density = new Float64Array(count);
+	for (let i = 0; i < count; i++) {
+		const from = index[i] ?? 0;
+		orders[i] = givenOrders[from] ?? 0;
+		density[i] = checkedDensity('density', given, from);
+	}
 	for (let i = 1; i < count; i++) {
-		const end = (starts[i - 1] ?? 0) + 4 ** (order - (orders[i - 1] ?? 0));
+		const end = (starts[i - 1] ?? 0) + (POWERS[order - (orders[i - 1] ?? 0)] ?? 0);
 		if (end > (starts[i] ?? 0)) {
 			const from = index[i] ?? 0;
 			throw new MapFault('uniq', from, `is ${uniq[from]}; it overlaps another cell of the map`);
@@ -61,7 +69,10 @@ export function normalisedMap(
 	density: Float64Array
 ): SortedMap {
 	const count = starts.length;
-	const ends = starts.map((start, i) => start + 4 ** (order - (orders[i] ?? 0)));
+	const ends = new Float64Array(count);
+	for (let i = 0; i < count; i++) {
+		ends[i] = (starts[i] ?? 0) + (POWERS[order - (orders[i] ?? 0)] ?? 0);
+	}
 	const before = new Float64Array(count + 1);
 	for (let i = 0; i < count; i++) {
 		before[i + 1] = (before[i] ?? 0) + (density[i] ?? 0) * cellAreaSr(orders[i] ?? 0);
@@ -85,6 +96,7 @@ function placesOf(uniq: ArrayLike<number>) {
 	const orders = new Uint8Array(count);
 	const pixels = new Float64Array(count);
 	let order = 0;
+	let own = 0;
 	for (let i = 0; i < count; i++) {
 		const value = uniq[i] ?? NaN;
 		if (!(Number.isSafeInteger(value) && value >= 4 && value < UNIQ_END)) {
@@ -94,19 +106,18 @@ function placesOf(uniq: ArrayLike<number>) {
 				`is ${value}; it must be a whole number from 4 to 16 · 4^24 − 1`
 			);
 		}
-		const cell = fromUniq(value);
-		orders[i] = cell.order;
-		pixels[i] = cell.pixel;
-		if (cell.order > order) order = cell.order;
+		// Most cells are of the order of the one before.
+		while (4 * (POWERS[own] ?? 0) > value) own--;
+		while (4 * (POWERS[own + 1] ?? Infinity) <= value) own++;
+		orders[i] = own;
+		pixels[i] = value - 4 * (POWERS[own] ?? 0);
+		if (own > order) order = own;
 	}
-	const index = new Uint32Array(count);
-	let ascending = true;
 	for (let i = 0; i < count; i++) {
-		index[i] = i;
-		pixels[i] = (pixels[i] ?? 0) * 4 ** (order - (orders[i] ?? 0));
-		if (i > 0 && (pixels[i - 1] ?? 0) >= (pixels[i] ?? 0)) ascending = false;
+		pixels[i] = (pixels[i] ?? 0) * (POWERS[order - (orders[i] ?? 0)] ?? 0);
 	}
-	if (!ascending) index.sort((a, b) => (pixels[a] ?? 0) - (pixels[b] ?? 0));
-	const starts = ascending ? pixels : Float64Array.from(index, (i) => pixels[i] ?? 0);
+	const index = sortedIndex(pixels);
+	const starts = new Float64Array(count);
+	for (let i = 0; i < count; i++) starts[i] = pixels[index[i] ?? 0] ?? 0;
 	return { order, orders, index, starts };
 }
