@@ -1,5 +1,6 @@
 import type { AlertPacket } from '../src/lib/domain/alertPacket';
 import type { Equatorial } from '../src/lib/sky/angle';
+import { separationDeg } from '../src/lib/sky/vector';
 import { demoIvorn } from './demoVoEvent';
 import { antisolarPosition, between, measuredCircle, type Draw } from './demoSky';
 
@@ -27,6 +28,9 @@ const RESEND_SHARE = 0.15;
 const IMAGE_IMPROVED_SHARE = 0.4;
 const IMAGE_WITHDRAWN_SHARE = 0.15;
 
+/** Two bursts further apart than this are never taken for one. */
+const AWAY_DEG = 35;
+
 /** Draws the next story by how often each occurs. */
 export function drawStory(draw: Draw): Story {
 	let left = draw();
@@ -39,10 +43,18 @@ export function drawStory(draw: Draw): Story {
 
 /**
  * The packets of one story whose burst was at `t0Ms`: every centre is drawn from its declared error
- * about one true position, which lies in the half of the sky opposite the Sun.
+ * about one true position, which lies in the half of the sky opposite the Sun and not near `awayFrom`.
  */
-export function planStory(draw: Draw, story: Story, t0Ms: number): PlannedPacket[] {
-	const truth = antisolarPosition(draw, t0Ms);
+export function planStory(
+	draw: Draw,
+	story: Story,
+	t0Ms: number,
+	awayFrom: Equatorial | null = null
+): PlannedPacket[] {
+	let truth = antisolarPosition(draw, t0Ms);
+	while (awayFrom && separationDeg(truth, awayFrom) < AWAY_DEG) {
+		truth = antisolarPosition(draw, t0Ms);
+	}
 	const first = gammaReport(draw, truth, t0Ms, story === 'test' ? 'test' : 'observation');
 	const planned: PlannedPacket[] = [{ delayS: 0, stream: 'tambour', packet: first }];
 	const followup = (cited: { stream: DemoStream; packetId: string }) => [

@@ -5,7 +5,7 @@ import { separationDeg, toEquatorial } from '../src/lib/sky/vector';
 import { XMLParser } from 'fast-xml-parser';
 import { drawStory, planStory, type Story } from './demoEvents';
 import { runFeed, type FeedOptions } from './demoFeed';
-import { measuredCircle, seededDraw } from './demoSky';
+import { antisolarPosition, measuredCircle, seededDraw } from './demoSky';
 import { demoVoEvent } from './demoVoEvent';
 import { serveLoopback, readBody, type Answer } from './loopbackServer';
 
@@ -45,6 +45,18 @@ describe('a story', () => {
 					}
 				}
 			}
+		}
+	});
+
+	it('keeps away from what is happening already', () => {
+		const awayFrom = antisolarPosition(seededDraw(5), T0_MS);
+		for (let seed = 0; seed < 200; seed += 1) {
+			const positions = planStory(seededDraw(seed), 'localised', T0_MS, awayFrom).flatMap(
+				({ stream, packet }) =>
+					stream === 'needle' && packet.shape?.kind === 'circle' ? [packet.shape.centre] : []
+			);
+			expect(positions.length).toBeGreaterThan(0);
+			for (const centre of positions) expect(separationDeg(centre, awayFrom)).toBeGreaterThan(34);
 		}
 	});
 

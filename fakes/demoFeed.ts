@@ -1,5 +1,6 @@
 import { readFileSync } from 'node:fs';
 import { setTimeout as delay } from 'node:timers/promises';
+import type { Equatorial } from '../src/lib/sky/angle';
 import { formatPosition } from './demoFeedLog';
 import { drawStory, planStory, type DemoStream, type PlannedPacket } from './demoEvents';
 import { demoVoEvent } from './demoVoEvent';
@@ -14,6 +15,8 @@ export type FeedOptions = {
 	/** API key of each stream. */
 	keys: Record<DemoStream, string>;
 	draw: Draw;
+	/** The first burst keeps away from here: something else is happening there. */
+	awayFrom?: Equatorial | null;
 	log: (line: string) => void;
 	/** Aborting it ends the feed. */
 	signal: AbortSignal;
@@ -44,7 +47,8 @@ export async function runFeed(options: FeedOptions): Promise<void> {
 		for (let isFirst = true; ; isFirst = false) {
 			const startMs = now();
 			const t0Ms = startMs - Math.round(between(draw, 2_000, 6_000));
-			const planned = planStory(draw, isFirst ? 'localised' : drawStory(draw), t0Ms);
+			const story = isFirst ? 'localised' : drawStory(draw);
+			const planned = planStory(draw, story, t0Ms, isFirst ? options.awayFrom : null);
 			for (const next of planned) {
 				await sleep(Math.max(0, startMs + next.delayS * 1000 - now()), signal);
 				await deliver(next, { ...options, sleep });
@@ -144,8 +148,9 @@ if (isMain(import.meta.url)) {
 	if (!origin || !keysFile || !brokerUrl) {
 		throw new Error('ORIGIN, DUSKLINE_BROKER_URL and DUSKLINE_DEMO_KEYS_FILE must be set');
 	}
-	const { streams } = JSON.parse(readFileSync(keysFile, 'utf8')) as {
+	const { streams, happening } = JSON.parse(readFileSync(keysFile, 'utf8')) as {
 		streams: Record<DemoStream, string>;
+		happening?: Equatorial | null;
 	};
 	const stop = new AbortController();
 	for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) {
@@ -155,6 +160,7 @@ if (isMain(import.meta.url)) {
 		origin,
 		brokerUrl,
 		keys: streams,
+		awayFrom: happening,
 		draw: seededDraw(Number(process.env.DUSKLINE_FEED_SEED ?? Date.now())),
 		log: (line) => console.log(`${new Date().toISOString().slice(11, 19)} UTC  ${line}`),
 		signal: stop.signal

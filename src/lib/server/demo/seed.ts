@@ -47,9 +47,11 @@ async function main(): Promise<void> {
 			files: null,
 			now: () => new Date()
 		};
-		const { made, transients, keys } = await seedDemo(app, readKeys(keysFile));
+		const { made, transients, keys, happening } = await seedDemo(app, readKeys(keysFile));
 		if (keys && keysFile) {
-			writeFileSync(keysFile, `${JSON.stringify({ streams: keys }, null, 2)}\n`, { mode: 0o600 });
+			writeFileSync(keysFile, `${JSON.stringify({ streams: keys, happening }, null, 2)}\n`, {
+				mode: 0o600
+			});
 			// The mode above holds for a new file only.
 			chmodSync(keysFile, 0o600);
 		}

@@ -1,5 +1,6 @@
 import { and, eq, inArray, isNull, sql } from 'drizzle-orm';
 import type { App } from '../app';
+import type { Equatorial } from '../../sky/angle';
 import { takeIn } from '../packets/takeInService';
 import { alert, stream, streamKey } from '../db/schema/alerts';
 import { person } from '../db/schema/people';
@@ -30,6 +31,8 @@ export type SeedResult = {
 	transients: number;
 	/** Stream keys in clear; null when the ones known to the caller still hold. */
 	keys: Record<string, string> | null;
+	/** Where the transient is that this run began; the feed's bursts keep away from it. */
+	happening: Equatorial | null;
 };
 
 /** Any fixed number: two seeds at once wait for each other. */
@@ -69,9 +72,9 @@ export async function seedDemo(
 	});
 	const { demoBroker } = app.config;
 	if (demoBroker) await writeTransaction(app, (tx) => seedBroker(tx, demoBroker));
-	await beginHappeningNow(app, +now);
+	const happening = await beginHappeningNow(app, +now);
 	if (seeded.made) await requestAllOutlooks(app);
-	return seeded;
+	return { ...seeded, happening };
 }
 
 async function seedAll(
@@ -132,13 +135,13 @@ async function renewKeys(
 }
 
 /** A coarse circle some minutes ago and an X-ray position since, through the door that real packets use. */
-async function beginHappeningNow(app: App, nowMs: number): Promise<void> {
+async function beginHappeningNow(app: App, nowMs: number): Promise<Equatorial | null> {
 	const [begun] = await app.database
 		.select({ id: alert.id })
 		.from(alert)
 		.where(eq(alert.remarks, NOW_REMARKS))
 		.limit(1);
-	if (begun) return;
+	if (begun) return null;
 	const random = demoRandom(RANDOM_SEED + 1);
 	const t0Ms = Math.floor((nowMs - NOW_T0_AGO_MS) / 1000) * 1000;
 	const source = visiblePosition(random, networkSky(nowMs, 6), nowMs, {
@@ -158,4 +161,5 @@ async function beginHappeningNow(app: App, nowMs: number): Promise<void> {
 			channel: 'api'
 		});
 	}
+	return source;
 }
