@@ -14,7 +14,7 @@ test('a duty scientist enters a map from a file, and takes the region away as fi
 	const { violations } = await new AxeBuilder({ page }).analyze();
 	expect(violations.map(({ id }) => id)).toEqual([]);
 
-	await page.getByLabel('Packet id').fill(`MAP-${Date.now()}`);
+	await page.getByLabel('Packet name').fill(`MAP-${Date.now()}`);
 	await page.getByLabel('T0').fill('2026-01-05 02:30:00');
 	const file = page.getByLabel('File');
 	const enter = page.getByRole('button', { name: 'Enter the map' });

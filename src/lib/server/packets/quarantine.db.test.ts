@@ -109,4 +109,36 @@ describe('a body whose process ended before it was judged', () => {
 		expect((await packetRow(kept.id)).state).toBe('taken');
 		expect(await world.app.database.$count(alert, eq(alert.packetId, 'TB-orphan'))).toBe(1);
 	});
+
+	it('does not hold up those behind it when a fault of ours is in the way, and is listed after an hour', async () => {
+		const keep = (packetId: string) =>
+			keepPacket(
+				world.app.database,
+				gamma.streamId,
+				{
+					body: Buffer.from(JSON.stringify(circlePacket({ packetId }))),
+					contentType: 'application/json',
+					channel: 'api'
+				},
+				world.app.now()
+			);
+		const stuck = await keep('TB-stuck');
+		world.tick(1);
+		const next = await keep('TB-next');
+		world.tick(61);
+		const broken = {
+			...world.app,
+			queue: {
+				enqueue: () => Promise.reject(new Error('out of order'))
+			}
+		};
+		await resumePackets(broken);
+		expect((await packetRow(stuck.id)).state).toBe('received');
+		expect((await packetRow(next.id)).state).toBe('received');
+		world.tick(3600);
+		await resumePackets(broken);
+		expect(await packetRow(stuck.id)).toMatchObject({ state: 'refused', code: 'unavailable' });
+		await replayPacket(world.app, steward, stuck.id);
+		expect((await packetRow(stuck.id)).state).toBe('taken');
+	});
 });

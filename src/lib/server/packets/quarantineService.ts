@@ -4,7 +4,8 @@ import { requirePermission, type Actor } from '../actor';
 import type { App } from '../app';
 import { packet, stream } from '../db/schema/alerts';
 import { DomainError } from '../domainError';
-import { settlePacket } from './packetStore';
+import { logger } from '../logger';
+import { settlePacket, type PacketRow } from './packetStore';
 import { judgePacket, type Intake } from './takeInService';
 
 const SHOWN = 100;
@@ -83,6 +84,8 @@ export async function dismissPacket(app: App, actor: Actor | null, id: number): 
 /** A body that is kept but was not judged within this time lost its process on the way. */
 const UNJUDGED_AFTER_S = 60;
 const RESUMED_AT_ONCE = 50;
+/** One that fails for this long, and not because of what it says, goes to the quarantine list all the same. */
+const GIVEN_UP_AFTER_S = 3600;
 
 /** Judges what was kept by a process that ended before it had judged it. */
 export async function resumePackets(app: App): Promise<number> {
@@ -99,8 +102,20 @@ export async function resumePackets(app: App): Promise<number> {
 			await judgePacket(app, row.stream, row.packet);
 		} catch (error) {
 			// A refusal is its outcome, and it is noted.
-			if (!(error instanceof DomainError)) throw error;
+			if (!(error instanceof DomainError)) await giveUpLater(app, row.packet, error as Error);
 		}
 	}
 	return rows.length;
+}
+
+/** A body that a fault of ours keeps from being judged must not hold up those behind it. */
+async function giveUpLater(app: App, kept: PacketRow, { message }: Error): Promise<void> {
+	logger.error({ packet: kept.id, error: message }, 'a packet could not be judged');
+	if (+app.now() - +kept.receivedAt < GIVEN_UP_AFTER_S * 1000) return;
+	await settlePacket(app.database, kept.id, {
+		state: 'refused',
+		at: app.now(),
+		code: 'unavailable',
+		detail: 'Duskline failed over it; the log says how. Read it again once that is mended.'
+	});
 }
