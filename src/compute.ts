@@ -7,6 +7,7 @@ import { searchedRegion, type SearchedRegion } from './lib/sky/catch/searchedReg
 import type { NotFound } from './lib/sky/catch/looks';
 import { computeOutlook } from './lib/sky/outlook/computeOutlook';
 import type { FadeModel, Outlook, OutlookInput } from './lib/sky/outlook/outlook';
+import { logBayesFactor, logBayesOfJoining } from './lib/sky/regions/agreement';
 import { jointRegion } from './lib/sky/regions/jointRegion';
 import type { JointRegion } from './lib/sky/regions/jointRegion';
 import { MapFault, type MapField } from './lib/sky/regions/mapFault';
@@ -22,6 +23,12 @@ export { outlookText } from './lib/server/outlook/outlookText';
 
 export function outlook(input: OutlookInput): Outlook {
 	return computeOutlook(input);
+}
+
+export { logBayesFactor as bayes };
+
+export function bayesOfJoining({ parts, shape }: { parts: Shape[]; shape: Shape }): number {
+	return logBayesOfJoining(parts, shape);
 }
 
 export function joint(parts: Shape[]): JointRegion {

@@ -16,6 +16,7 @@ import { computeOutlook } from '../../src/lib/sky/outlook/computeOutlook';
 import { searchedRegion } from '../../src/lib/sky/catch/searchedRegion';
 import { jointRegion } from '../../src/lib/sky/regions/jointRegion';
 import { fileShape, mapShape, regionFile } from '../../src/compute';
+import { logBayesFactor, logBayesOfJoining } from '../../src/lib/sky/regions/agreement';
 import { mocOutline } from '../../src/lib/sky/moc/mocOutline';
 import { memoryStore } from './memoryStore';
 import { createTestDatabase } from './testDatabase';
@@ -54,6 +55,9 @@ export async function openWorld(start = NIGHT) {
 			jointRegion: (parts) => Promise.resolve(jointRegion(parts)),
 			searchedRegion: ({ shapes, reports, t0Ms, fade }) =>
 				Promise.resolve(searchedRegion(shapes, reports, t0Ms, fade)),
+			logBayesFactor: (parts) => Promise.resolve(logBayesFactor(parts)),
+			logBayesOfJoining: ({ parts, shape }) =>
+				Promise.resolve(logBayesOfJoining(structuredClone(parts), shape)),
 			outline: (moc) => Promise.resolve(mocOutline(moc)),
 			mapShape: (source) => Promise.resolve(mapShape(source)),
 			fileShape: async (load) => fileShape(await load()),

@@ -61,7 +61,7 @@ export async function receiveAlert(
 		const twin = serials.find((row) => row.serial === content.serial);
 		if (twin) return repeated(app, tx, source, twin, received);
 
-		const placement = await placeAlert(tx, {
+		const placement = await placeAlert(app, tx, {
 			packet: content,
 			serials,
 			streamId: source.id,

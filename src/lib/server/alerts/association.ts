@@ -7,6 +7,7 @@ import {
 	logPriorOdds
 } from '../../sky/regions/agreement';
 import type { Shape } from '../../sky/regions/shape';
+import type { App } from '../app';
 import type { Transaction } from '../db/database';
 import type { Citation } from '../db/schema/alerts';
 import {
@@ -51,7 +52,7 @@ type Citing = { alert: AlertRow; relation: Citation['relation'] };
  * Decides which transient an alert belongs to: the one of its earlier serial, else of what it cites,
  * else of what already cites it, else the one it agrees with best (science: Budavári & Szalay 2008).
  */
-export async function placeAlert(tx: Transaction, arrival: Arrival): Promise<Placement> {
+export async function placeAlert(app: App, tx: Transaction, arrival: Arrival): Promise<Placement> {
 	const { packet, streamId } = arrival;
 	// A test neither joins, replaces nor retracts what is real, nor the other way round.
 	const serials = arrival.serials.filter((row) => row.role === packet.role);
@@ -83,7 +84,7 @@ export async function placeAlert(tx: Transaction, arrival: Arrival): Promise<Pla
 			overreaches
 		};
 	}
-	const best = arrival.shape ? await bestMatch(tx, arrival, arrival.shape) : null;
+	const best = arrival.shape ? await bestMatch(app, tx, arrival, arrival.shape) : null;
 	if (!best || best.logOdds < START_LOG_ODDS) {
 		return {
 			transientId: null,
@@ -118,6 +119,7 @@ function oddsOfTheSamePlace(replaced: AlertRow[], arrival: Arrival): number | nu
 }
 
 async function bestMatch(
+	app: App,
 	tx: Transaction,
 	arrival: Arrival,
 	shape: Shape
@@ -132,7 +134,10 @@ async function bestMatch(
 	for (const { id } of near) {
 		const parts = await liveParts(tx, id);
 		if (parts.length === 0) continue;
-		const logOdds = logOddsOfBelonging(parts, shape, arrival);
+		const shapes = parts.map((part) => part.shape);
+		const logOdds = onlyCircles([...shapes, shape])
+			? logOddsOfBelonging(parts, shape, arrival)
+			: posterior(await app.compute.logBayesOfJoining({ parts: shapes, shape }), [arrival]);
 		if (!best || logOdds > best.logOdds) best = { transientId: id, logOdds };
 	}
 	return best;
@@ -151,14 +156,30 @@ export function logOddsOfBelonging(
 		parts.map((part) => part.shape),
 		shape
 	);
-	return finite(together + logPrior(arrival));
+	return posterior(together, [arrival]);
 }
 
 /** Natural log of the odds that all live parts come from one source; null with fewer than two. */
 export function logOddsOfAgreement(parts: LivePart[]): number | null {
 	if (parts.length < 2) return null;
-	const prior = parts.slice(1).reduce((sum, part) => sum + logPrior(part), 0);
-	return finite(logBayesFactor(parts.map((part) => part.shape)) + prior);
+	return posterior(logBayesFactor(parts.map((part) => part.shape)), parts.slice(1));
+}
+
+/** The same of any shapes: circles have a closed form, the others are meshed in a compute thread. */
+export async function oddsOfAgreement(app: App, parts: LivePart[]): Promise<number | null> {
+	const shapes = parts.map((part) => part.shape);
+	if (parts.length < 2 || onlyCircles(shapes)) return logOddsOfAgreement(parts);
+	return posterior(await app.compute.logBayesFactor(shapes), parts.slice(1));
+}
+
+const onlyCircles = (shapes: Shape[]) => shapes.every((shape) => shape.kind === 'circle');
+
+/** ln of the posterior odds: the Bayes factor times the prior odds of each further alert. */
+function posterior(
+	logBayes: number,
+	further: Pick<LivePart, 'alertsPerYear' | 'coincidenceWindowS'>[]
+): number {
+	return finite(further.reduce((sum, part) => sum + logPrior(part), logBayes));
 }
 
 function logPrior(source: Pick<LivePart, 'alertsPerYear' | 'coincidenceWindowS'>): number {

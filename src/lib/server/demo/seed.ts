@@ -1,6 +1,7 @@
 import { chmodSync, readFileSync, writeFileSync } from 'node:fs';
 import { pathToFileURL } from 'node:url';
 import { searchedRegion } from '../../sky/catch/searchedRegion';
+import { logBayesFactor, logBayesOfJoining } from '../../sky/regions/agreement';
 import { jointRegion } from '../../sky/regions/jointRegion';
 import type { App } from '../app';
 import { parseConfig } from '../config';
@@ -35,6 +36,8 @@ async function main(): Promise<void> {
 			compute: {
 				jointRegion: async (parts) => jointRegion(parts),
 				outline: leftToWorkers,
+				logBayesFactor: async (parts) => logBayesFactor(parts),
+				logBayesOfJoining: async ({ parts, shape }) => logBayesOfJoining(parts, shape),
 				mapShape: () => Promise.reject(new Error('the demo has no maps')),
 				fileShape: () => Promise.reject(new Error('the demo has no files')),
 				regionFile: leftToWorkers,

@@ -36,6 +36,9 @@ export type ComputePool = {
 	outlookText: (input: OutlookInput) => Promise<OutlookText>;
 	jointRegion: (parts: Shape[]) => Promise<JointRegion>;
 	searchedRegion: (input: SearchInput) => Promise<SearchedRegion>;
+	/** ln of Bayes factors: of all parts, and of one more shape having their source. */
+	logBayesFactor: (parts: Shape[]) => Promise<number>;
+	logBayesOfJoining: (input: { parts: Shape[]; shape: Shape }) => Promise<number>;
 	mapShape: (source: MapSource) => Promise<MapAnswer>;
 	/** The region in a file's bytes; `load` is called when it is this file's turn, so that few are held at once. */
 	fileShape: (load: () => Promise<ArrayBuffer>) => Promise<FileAnswer>;
@@ -74,6 +77,8 @@ export function createComputePool(threads: number): ComputePool {
 		outlookText: (input) => pool.run(input, { name: 'outlookText' }) as Promise<OutlookText>,
 		jointRegion: (parts) => pool.run(parts, { name: 'joint' }) as Promise<JointRegion>,
 		searchedRegion: (input) => pool.run(input, { name: 'searched' }) as Promise<SearchedRegion>,
+		logBayesFactor: (parts) => pool.run(parts, { name: 'bayes' }) as Promise<number>,
+		logBayesOfJoining: (input) => pool.run(input, { name: 'bayesOfJoining' }) as Promise<number>,
 		mapShape: (source) => reader.run(source, { name: 'mapShape' }) as Promise<MapAnswer>,
 		fileShape: (load) => {
 			const answer = turn.then(() => fileShape(load));

@@ -3,7 +3,7 @@ import { jointRegion, type JointRegion, type RegionPoints } from '../../sky/regi
 import { formatArea } from '../../domain/area';
 import type { App } from '../app';
 import { liveParts, type LivePart } from '../alerts/alertStore';
-import { logOddsOfAgreement } from '../alerts/association';
+import { oddsOfAgreement } from '../alerts/association';
 import type { Transaction } from '../db/database';
 import { region, transient } from '../db/schema/transients';
 import { alert } from '../db/schema/alerts';
@@ -83,7 +83,7 @@ async function storeNextRegion(
 		area50Deg2: joint.area50Deg2,
 		area90Deg2: joint.area90Deg2,
 		equivalentRadiusDeg: joint.equivalentRadiusDeg,
-		logOddsAgreement: logOddsOfAgreement(parts),
+		logOddsAgreement: await oddsOfAgreement(app, parts),
 		notFoundCount,
 		tooFaintChance,
 		points: joint.points,
