@@ -24,6 +24,16 @@ const day = () => `2026-11-${String(serialNumber).padStart(2, '0')}`;
 const t0 = (clock = '03:41:27') => `${day()}T${clock}Z`;
 const packetId = (name: string) => `${name}-${serialNumber}`;
 
+/** A packet that retracts Tambour's A. */
+const retractionOfA = () => ({
+	packetId: packetId('R'),
+	serial: 1,
+	role: 'observation',
+	kind: 'retraction',
+	t0: t0(),
+	cites: [{ stream: 'tambour', packetId: packetId('A'), relation: 'retraction' }]
+});
+
 async function versions(designation: string) {
 	return world.app.database
 		.select({
@@ -213,14 +223,7 @@ describe('updates and retractions', () => {
 
 	it('a retraction withdraws its part; without live alerts the transient is closed as retracted', async () => {
 		const first = await world.receive(gamma, circlePacket({ packetId: packetId('A'), t0: t0() }));
-		const { receipt } = await world.receive(gamma, {
-			packetId: packetId('R'),
-			serial: 1,
-			role: 'observation',
-			kind: 'retraction',
-			t0: t0(),
-			cites: [{ stream: 'tambour', packetId: packetId('A'), relation: 'retraction' }]
-		});
+		const { receipt } = await world.receive(gamma, retractionOfA());
 		expect(receipt.designation).toBe(first.receipt.designation);
 		const [row] = await world.app.database
 			.select()
@@ -242,14 +245,7 @@ describe('updates and retractions', () => {
 
 	it('a retraction by another stream is heard, and the alert it names stands', async () => {
 		const first = await world.receive(gamma, circlePacket({ packetId: packetId('A'), t0: t0() }));
-		const { receipt } = await world.receive(xray, {
-			packetId: packetId('R'),
-			serial: 1,
-			role: 'observation',
-			kind: 'retraction',
-			t0: t0(),
-			cites: [{ stream: 'tambour', packetId: packetId('A'), relation: 'retraction' }]
-		});
+		const { receipt } = await world.receive(xray, retractionOfA());
 		expect(receipt.designation).toBe(first.receipt.designation);
 		const [row] = await world.app.database
 			.select()
@@ -264,14 +260,7 @@ describe('updates and retractions', () => {
 	});
 
 	it('a retraction that overtakes its report still holds when the report arrives', async () => {
-		await world.receive(gamma, {
-			packetId: packetId('R'),
-			serial: 1,
-			role: 'observation',
-			kind: 'retraction',
-			t0: t0(),
-			cites: [{ stream: 'tambour', packetId: packetId('A'), relation: 'retraction' }]
-		});
+		await world.receive(gamma, retractionOfA());
 		const late = await world.receive(gamma, circlePacket({ packetId: packetId('A'), t0: t0() }));
 		const [row] = await world.app.database
 			.select()

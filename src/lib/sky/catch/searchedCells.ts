@@ -2,7 +2,7 @@ import { cellAreaSr, cellRadiusRad, cellVector, CELL_ORDER_MAX } from '../healpi
 import type { Density } from '../regions/density/density';
 import type { MeshCell } from '../regions/mesh';
 import { tileContains, type TileAxes } from '../tiling/field';
-import { footprintSide } from './footprintSide';
+import { footprintSide } from '../tiling/footprintSide';
 import { verdictOf, type Look, type Verdict } from './looks';
 
 /** Cells on a footprint's edge with more probability than this are split in four: at most 10,000 share all of it. */

@@ -8,7 +8,7 @@ import { fieldContains, preparedField, tileAxes } from '../tiling/field';
 import { offset, project, toVector } from '../vector';
 import type { Detector } from '../visibility/telescope';
 import { detectChance, DEFAULT_FADE } from './fade';
-import { footprintSide } from './footprintSide';
+import { footprintSide } from '../tiling/footprintSide';
 import type { NotFound } from './looks';
 import { notFoundUpdate } from './notFoundUpdate';
 import { searchedRegion } from './searchedRegion';

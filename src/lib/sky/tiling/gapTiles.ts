@@ -1,5 +1,5 @@
 import { RAD_PER_DEG, type Equatorial } from '../angle';
-import { footprintSide } from '../catch/footprintSide';
+import { footprintSide } from './footprintSide';
 import { toVector, type Vector } from '../vector';
 import type { Detector } from '../visibility/telescope';
 import { fieldCell, type Cell } from './cell';

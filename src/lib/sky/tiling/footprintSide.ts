@@ -1,4 +1,4 @@
-import type { Field, TileAxes } from '../tiling/field';
+import type { Field, TileAxes } from './field';
 import type { Vector } from '../vector';
 
 /** Beyond this angle from the pointing the tangent plane stretches too much to decide by it. */
